@@ -1,0 +1,1 @@
+"""Draw a plant, click a bus, see the fault."""

@@ -1,0 +1,1 @@
+"""The picture without a screen, in sheet units."""

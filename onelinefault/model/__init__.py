@@ -1,0 +1,1 @@
+"""What the engineer drew: frozen data, no Qt, no numpy, no files."""

@@ -1,0 +1,1 @@
+"""Results for readers: tables, documents, plots."""

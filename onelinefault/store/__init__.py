@@ -1,0 +1,1 @@
+"""Plants on disk and shipped tables."""

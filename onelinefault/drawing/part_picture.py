@@ -5,7 +5,7 @@ from dataclasses import dataclass, replace
 from typing import Final, TypeAlias
 
 from onelinefault.drawing.shapes import MODULE_DU, Anchor, Box, Shapes, Text, bounds, transform
-from onelinefault.drawing.symbols import Look, levels, placed_symbol
+from onelinefault.drawing.symbols import Look, Symbol, levels, placed_symbol
 from onelinefault.model.conductors import Busway, Cable, OverheadLine
 from onelinefault.model.consumers import Bus, Note
 from onelinefault.model.figures import voltage_text
@@ -30,26 +30,33 @@ _NEUTRAL_FIELDS = ("neutral_high", "neutral_medium", "neutral_low", "neutral")
 
 @dataclass(frozen=True, slots=True)
 class PartPicture:
-    """Shapes in du on the sheet. box: all of them; body: the symbol without its leads; label: the words, or None."""
+    """The symbol with its place (x, y in du) and the words beside it, in du on the sheet.
+
+    box: everything; body: the symbol without its leads. Equal looks share one symbol, so that a painter can keep it.
+    """
 
     part: str
-    shapes: Shapes
+    symbol: Symbol
+    x: float
+    y: float
     words: Shapes
     box: Box
     body: Box
-    label: Box | None
+
+    @property
+    def shapes(self) -> Shapes:
+        """The symbol's shapes in du on the sheet."""
+        return transform(self.symbol.shapes, dx=self.x, dy=self.y)
 
 
 def part_picture(part: Part, roles: Roles) -> PartPicture:
     """The picture of a part. roles: see Roles."""
     symbol = placed_symbol(part.kind, look_of(part, roles), part.turn, part.mirrored)
     dx, dy = part.x * MODULE_DU, part.y * MODULE_DU
-    shapes = transform(symbol.shapes, dx=dx, dy=dy)
     body = symbol.body.moved(dx, dy)
     words = _words(part, body, roles)
-    label = bounds(words) if words else None
     box = symbol.box.moved(dx, dy)
-    return PartPicture(part.id, shapes, words, box.united(label) if label else box, body, label)
+    return PartPicture(part.id, symbol, dx, dy, words, box.united(bounds(words)) if words else box, body)
 
 
 def look_of(part: Part, roles: Roles) -> Look:

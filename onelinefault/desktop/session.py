@@ -69,6 +69,12 @@ class Session(QObject):
         """Whether the plant differs from its file."""
         return self.plant is not self.saved_plant and self.plant != self.saved_plant
 
+    @property
+    def arrangement_name(self) -> str:
+        """The running arrangement for title blocks."""
+        chosen = (a.name for a in self.plant.arrangements if a.id == self.choices.arrangement)
+        return next(chosen, "as drawn")
+
     def apply(self, edit: Edit) -> bool:
         """Do one step. False, with a sentence in the status line, when the plant refuses it; nothing changes then."""
         if edit.empty:

@@ -3,7 +3,7 @@
 The engine (numpy, scipy) is imported in the worker thread, so that the window stands before it is loaded.
 """
 
-from dataclasses import dataclass, field
+from dataclasses import dataclass
 from typing import TYPE_CHECKING, Any
 
 from PySide6.QtCore import QObject, QThread, QTimer, Signal, Slot
@@ -13,6 +13,7 @@ from onelinefault.errors import OneLineFaultError
 if TYPE_CHECKING:
     from onelinefault.desktop.session import Session
     from onelinefault.engine.case import Case
+    from onelinefault.engine.network import Network
     from onelinefault.engine.results import BusRow, FaultResult
     from onelinefault.model.fault import Fault
     from onelinefault.model.findings import Finding
@@ -38,10 +39,14 @@ class Answer:
     result: "FaultResult | None" = None
     rows: tuple["BusRow", ...] = ()
     findings: tuple["Finding", ...] = ()
-    nodes: int = 0
+    network: "Network | None" = None
     milliseconds: float = 0.0
     trouble: str = ""
-    extra: dict[str, Any] = field(default_factory=dict)
+
+    @property
+    def nodes(self) -> int:
+        """How many nodes the network has."""
+        return 0 if self.network is None else len(self.network.nodes)
 
 
 class _Worker(QObject):
@@ -85,7 +90,7 @@ class _Worker(QObject):
                 result = study.fault(request.fault)
             except OneLineFaultError as error:
                 trouble = str(error)
-        return Answer(request, result, rows, findings, len(study.network.nodes), trouble=trouble)
+        return Answer(request, result, rows, findings, study.network, trouble=trouble)
 
 
 class Solver(QObject):

@@ -5,8 +5,7 @@ from typing import Final
 
 from onelinefault.drawing.metrics import text_width, wrapped
 from onelinefault.drawing.palette import bar_weight_du
-from onelinefault.drawing.shapes import MODULE_DU, Box, Line, Rect, Shape, Shapes, Stroke, Text, transform
-from onelinefault.drawing.symbols_marks import gauge
+from onelinefault.drawing.shapes import MODULE_DU, Box, Line, Rect, Shape, Shapes, Stroke, Text
 from onelinefault.drawing.wire_picture import ZONE_MODULES
 from onelinefault.model.caution import CAUTION
 from onelinefault.model.plant import Document, Plant, Sheet
@@ -151,8 +150,9 @@ def _legend(sheet: Sheet, *, with_overlay: bool) -> list[Shape]:
         shapes.append(Rect(x, y - 4, 26, 8, 0, None, "ribbon"))
         shapes.append(_word(x + 32, y, "fault current, wider = more"))
         x += 32 + text_width("fault current, wider = more", 8.5) + 16
-        shapes += transform(tuple(s for s in gauge(60, "") if not isinstance(s, Text)), turn=0, dx=x + 4, dy=y - 8)
-        shapes.append(_word(x + 15, y, "voltage left"))
+        shapes.append(Rect(x, y - 7, 6, 14, 3, Stroke("gauge", 1.2), "paper"))
+        shapes.append(Rect(x + 1.6, y - 1, 2.8, 6.4, 1.4, None, "gauge"))
+        shapes.append(_word(x + 13, y, "voltage left"))
     return shapes
 
 

@@ -77,7 +77,7 @@ def ribbon(
     if len(points) < 2 or max(width_start, width_end) <= 0:
         return []
     stations = _stations(points)
-    limits = _half_width_limits(points)
+    limits = _half_width_limits(points, max(width_start, width_end))
     halves = [
         min(limit, (width_start + (width_end - width_start) * station / stations[-1]) / 2)
         for station, limit in zip(stations, limits, strict=True)
@@ -146,27 +146,30 @@ def _outline(points: Sequence[Point], halves: Sequence[float]) -> tuple[Point, .
     return (*left, *reversed(right))
 
 
-def _half_width_limits(points: Sequence[Point]) -> list[float]:
-    """Greatest half-width at each point that keeps parallel segments beside each other apart."""
+def _half_width_limits(points: Sequence[Point], width: float) -> list[float]:
+    """Greatest half-width at each point that keeps parallel segments beside each other apart.
+
+    Segments count as beside each other also when only their mitres are; not those on both sides of a step.
+    """
     limits = [float("inf")] * len(points)
     segments = list(pairwise(points))
     for i, one in enumerate(segments):
         for j in range(i + 1, len(segments)):
-            distance = _abreast(one, segments[j])
+            distance = _abreast(one, segments[j], 0.0 if j == i + 2 else width)
             if distance is not None:
                 for k in (i, i + 1, j, j + 1):
                     limits[k] = min(limits[k], distance / 2)
     return limits
 
 
-def _abreast(one: tuple[Point, Point], other: tuple[Point, Point]) -> float | None:
-    """Distance of two parallel segments that lie beside each other; None if they do not."""
+def _abreast(one: tuple[Point, Point], other: tuple[Point, Point], reach: float) -> float | None:
+    """Distance of two parallel segments beside each other, both longer by half of `reach`; None if they are not."""
     for along, across in ((0, 1), (1, 0)):
         if one[0][across] == one[1][across] and other[0][across] == other[1][across]:
             start = max(min(one[0][along], one[1][along]), min(other[0][along], other[1][along]))
             stop = min(max(one[0][along], one[1][along]), max(other[0][along], other[1][along]))
             distance = abs(one[0][across] - other[0][across])
-            return distance if start < stop and distance > _SAME else None
+            return distance if start - reach < stop and distance > _SAME else None
     return None
 
 

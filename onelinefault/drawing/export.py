@@ -7,7 +7,7 @@ from pathlib import Path
 from typing import Final
 
 from PySide6.QtCore import QBuffer, QByteArray, QIODevice, QMarginsF, QRectF, QSize, QSizeF
-from PySide6.QtGui import QColor, QGuiApplication, QImage, QPageLayout, QPageSize, QPainter, QPdfWriter
+from PySide6.QtGui import QColor, QGuiApplication, QImage, QImageWriter, QPageLayout, QPageSize, QPainter, QPdfWriter
 
 from onelinefault.drawing.painter import load_fonts, paint
 from onelinefault.drawing.palette import PRINT, SHEET
@@ -167,6 +167,6 @@ def _png(sheet: DrawnSheet, title: str) -> bytes:
     data = QByteArray()
     buffer = QBuffer(data)
     buffer.open(QIODevice.OpenModeFlag.WriteOnly)
-    image.save(buffer, b"PNG")
+    QImageWriter(buffer, QByteArray(b"png")).write(image)
     buffer.close()
     return bytes(data.data())

@@ -63,6 +63,7 @@ class Canvas(PartDrops):
         self.view.released.connect(self._release)
         self.view.doubled.connect(self._double)
         self.view.menu_wanted.connect(self._ask_menu)
+        self.view.scaled.connect(self.scene.show_scale)
         self.session.plant_changed.connect(self._plant_changed)
         self.session.sheet_changed.connect(self._sheet_changed)
         self.session.selection_changed.connect(self._selection_changed)

@@ -1,5 +1,7 @@
 """Scene items: each knows an id and how to paint a display list; none holds data of the plant."""
 
+from dataclasses import replace
+
 from PySide6.QtCore import QPointF, QRectF, Qt
 from PySide6.QtGui import QColor, QPainter, QPainterPath, QPen
 from PySide6.QtWidgets import QGraphicsItem, QStyleOptionGraphicsItem, QWidget
@@ -8,12 +10,14 @@ from onelinefault.drawing.painter import Painter
 from onelinefault.drawing.painter_sprites import SpritePainter
 from onelinefault.drawing.palette import SHEET
 from onelinefault.drawing.part_picture import PartPicture
-from onelinefault.drawing.shapes import MODULE_DU, Box, Shapes, bounds
+from onelinefault.drawing.shapes import MODULE_DU, Box, Shapes, Text, bounds
 from onelinefault.drawing.wire_picture import WirePicture
 
 PAINTER = Painter(SHEET)  # one cache of paths for all items
 SPRITES = SpritePainter(PAINTER)
-WORDS_FROM_SCALE = 0.35  # below this scale labels could not be read
+WORDS_FROM_SCALE = 0.42  # below this scale labels could not be read
+HALO_FROM_SCALE = 0.9  # below it halos round words are too thin to matter, and cost more than all else
+OVERVIEW_BELOW_SCALE = 0.3  # below it one item paints all outlines at once
 
 Z_PAGE, Z_RIBBONS, Z_WIRES, Z_PARTS, Z_OVER, Z_TAGS, Z_PIN, Z_GUIDES = range(-10, 70, 10)
 
@@ -63,6 +67,7 @@ class PartItem(QGraphicsItem):
         super().__init__()
         self.picture = picture
         self.chosen = False
+        self._plain: Shapes | None = None
         self.setZValue(Z_PARTS)
         self._rect = rect_of(picture.box, 6)
 
@@ -70,6 +75,7 @@ class PartItem(QGraphicsItem):
         """Paint the part as it is now."""
         self.prepareGeometryChange()
         self.picture = picture
+        self._plain = None
         self._rect = rect_of(picture.box, 6)
         self.update()
 
@@ -91,8 +97,17 @@ class PartItem(QGraphicsItem):
         painter.translate(self.picture.x, self.picture.y)
         SPRITES.paint(painter, self.picture.symbol.shapes, lod)
         painter.translate(-self.picture.x, -self.picture.y)
-        if self.picture.words and lod >= WORDS_FROM_SCALE:
-            PAINTER.paint(painter, self.picture.words, lod)
+        if self.picture.words and lod >= HALO_FROM_SCALE:
+            SPRITES.paint(painter, self.picture.words, lod)
+        elif self.picture.words and lod >= WORDS_FROM_SCALE:
+            PAINTER.paint(painter, self._plain_words(), lod)
+
+    def _plain_words(self) -> Shapes:
+        """The words without halo; the same tuple each time, which the painter relies on."""
+        if self._plain is None:
+            words = self.picture.words
+            self._plain = tuple(replace(w, halo="none") if isinstance(w, Text) else w for w in words)
+        return self._plain
 
 
 class WireItem(QGraphicsItem):

@@ -3,9 +3,11 @@
 from collections.abc import Mapping
 
 from PySide6.QtCore import QRectF
-from PySide6.QtWidgets import QGraphicsScene
+from PySide6.QtGui import QPainter
+from PySide6.QtWidgets import QGraphicsItem, QGraphicsScene, QStyleOptionGraphicsItem, QWidget
 
 from onelinefault.desktop.items import (
+    OVERVIEW_BELOW_SCALE,
     Z_GUIDES,
     Z_OVER,
     Z_PAGE,
@@ -16,6 +18,7 @@ from onelinefault.desktop.items import (
     TagItem,
     WireItem,
 )
+from onelinefault.desktop.overview import OverviewItem
 from onelinefault.drawing.overlay import OverlayData
 from onelinefault.drawing.overlay_picture import overlay_picture
 from onelinefault.drawing.page import Stamp, page_box, page_shapes
@@ -25,6 +28,21 @@ from onelinefault.drawing.sheet import SheetDrawing, SheetPicture
 from onelinefault.model.plant import Plant
 
 _DESK_MARGIN_DU = 400.0
+
+
+class _Group(QGraphicsItem):
+    """Holds all parts and wires, so that they can be hidden at once."""
+
+    def __init__(self) -> None:
+        super().__init__()
+        self.setFlag(QGraphicsItem.GraphicsItemFlag.ItemHasNoContents)
+
+    def boundingRect(self) -> QRectF:
+        """Nothing of its own."""
+        return QRectF()
+
+    def paint(self, painter: QPainter, option: QStyleOptionGraphicsItem, widget: QWidget | None = None) -> None:
+        """Nothing."""
 
 
 class SheetScene(QGraphicsScene):
@@ -42,7 +60,8 @@ class SheetScene(QGraphicsScene):
         self.tag_items: dict[str, TagItem] = {}
         self._page, self._ribbons = ShapesItem(Z_PAGE), ShapesItem(Z_RIBBONS)
         self._over, self._pin, self._guides = ShapesItem(Z_OVER), ShapesItem(Z_PIN), ShapesItem(Z_GUIDES)
-        for item in (self._page, self._ribbons, self._over, self._pin, self._guides):
+        self._near, self._far = _Group(), OverviewItem()
+        for item in (self._page, self._ribbons, self._near, self._far, self._over, self._pin, self._guides):
             self.addItem(item)
         self.turn_to(plant, plant.sheets[0].id)
 
@@ -97,6 +116,19 @@ class SheetScene(QGraphicsScene):
             if item is not None:
                 item.choose(key in selection)
         self._selection = selection
+        self._refresh_overview()
+
+    def show_scale(self, scale: float) -> None:
+        """Tell how large things are shown (pixels per du): from far away one item paints the whole sheet."""
+        far = scale < OVERVIEW_BELOW_SCALE
+        if far == self._near.isVisible():
+            self._near.setVisible(not far)
+            self._far.setVisible(far)
+            self._refresh_overview()
+
+    def _refresh_overview(self) -> None:
+        if self._far.isVisible():
+            self._far.show_picture(self.picture, self._selection, self.page_rect())
 
     def show_guides(self, shapes: Shapes) -> None:
         """Show what a gesture wants to show: rubber band, guide lines, ghosts. Empty: nothing."""
@@ -122,6 +154,7 @@ class SheetScene(QGraphicsScene):
                 item = self.part_items.pop(key, None) or self.wire_items.pop(key, None)
                 if item is not None:
                     self.removeItem(item)
+        self._refresh_overview()
 
     def _renew_part(self, key: str) -> None:
         item = self.part_items.get(key)
@@ -130,7 +163,7 @@ class SheetScene(QGraphicsScene):
             return
         item = self.part_items[key] = PartItem(self.picture.parts[key])
         item.choose(key in self._selection)
-        self.addItem(item)
+        item.setParentItem(self._near)
 
     def _renew_wire(self, key: str) -> None:
         item = self.wire_items.get(key)
@@ -139,7 +172,7 @@ class SheetScene(QGraphicsScene):
             return
         item = self.wire_items[key] = WireItem(self.picture.wires[key])
         item.choose(key in self._selection)
-        self.addItem(item)
+        item.setParentItem(self._near)
 
     def _show_page(self) -> None:
         self._page.show_shapes(page_shapes(self.plant, self.picture.sheet, self._stamp))

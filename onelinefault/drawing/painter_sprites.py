@@ -16,7 +16,7 @@ from PySide6.QtGui import QPainter, QPixmap, QTransform
 from onelinefault.drawing.painter import Painter
 from onelinefault.drawing.shapes import Shapes, bounds
 
-LARGEST_PX: Final = 160  # larger symbols are few on a screen, and outlines are sharper
+LARGEST_PX: Final = 480  # larger symbols are few on a screen, and outlines are sharper
 _KEPT: Final = 4096
 _PHASES: Final = 2
 

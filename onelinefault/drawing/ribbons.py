@@ -132,7 +132,7 @@ def _chevron(
 def _outline(points: Sequence[Point], halves: Sequence[float]) -> tuple[Point, ...]:
     """One side of the ribbon forwards, the other backwards; at a corner the two edges are mitred."""
     ahead = [_unit(a, b) for a, b in pairwise(points)]
-    if len(points) > 2:  # an end shorter than the mitre beside it would turn inside out
+    if len(points) > 2:  # the mitre beside a short end would reach back over what the end keeps clear of
         first, *_, last = (hypot(b[0] - a[0], b[1] - a[1]) for a, b in pairwise(points))
         halves = [halves[0], min(halves[1], first), *halves[2:]]
         halves = [*halves[:-2], min(halves[-2], last), halves[-1]]

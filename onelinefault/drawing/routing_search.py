@@ -55,7 +55,7 @@ def bends_to_go(grid: Lattice, starts: Sequence[Stub], ends: Sequence[Stub]) -> 
     seen: list[Rows] = [[0] * len(grid.ys) for _ in COMPASS]
     mirrored: dict[int, int] = {}
     fewest: int | None = None
-    while fewest is None or fewest > len(levels):
+    while fewest is None or fewest >= len(levels):
         seeds = _seeds(grid, [end for end in ends if end.bends == len(levels)])
         level = _next_level(grid, levels[-1] if levels else None, seeds, seen, mirrored)
         if level is None and len(levels) > _LONGEST_EXTRA:

@@ -44,7 +44,8 @@ class SheetDrawing:
         self._sheet = sheet
         self._roles = roles
         self._plant = Plant(sheets=plant.sheets)
-        self._obstacles = Obstacles()
+        self._obstacles, self._wire_regions = Obstacles(), Obstacles()
+        self._wires_of: dict[str, set[str]] = {}
         self._parts: dict[str, PartPicture] = {}
         self._wires: dict[str, WirePicture] = {}
         self.show(plant)
@@ -66,11 +67,17 @@ class SheetDrawing:
             self._roles = roles
         before, self._plant = self._plant, plant
         self._sheet = plant.sheet(self._sheet.id) or self._sheet
-        keys = before.parts.keys() | plant.parts.keys()
-        parts = {k for k in keys if recolour or before.parts.get(k) is not plant.parts.get(k)}
+        parts = self._parts_to_renew(before, recolour)
         touched, regions = self._renew_parts(parts)
         wires = self._wires_to_renew(before, parts, regions, everything=recolour or before.sheets is not plant.sheets)
         return frozenset(touched | self._renew_wires(wires))
+
+    def _parts_to_renew(self, before: Plant, recolour: bool) -> set[str]:
+        after = self._plant
+        if before.parts is after.parts and not recolour:
+            return set()
+        keys = before.parts.keys() | after.parts.keys()
+        return {k for k in keys if recolour or before.parts.get(k) is not after.parts.get(k)}
 
     def _renew_parts(self, keys: set[str]) -> tuple[set[str], list[GridBox]]:
         """Draw these parts anew; which pictures changed, and where obstacles came or went."""
@@ -93,20 +100,31 @@ class SheetDrawing:
         return touched, regions
 
     def _wires_to_renew(self, before: Plant, parts: set[str], regions: list[GridBox], *, everything: bool) -> set[str]:
-        plant = self._plant
-        keys = before.wires.keys() | plant.wires.keys()
-        if everything:
-            return set(keys)
-        found = set()
-        for key in keys:
-            wire = plant.wires.get(key)
-            if wire is None or before.wires.get(key) is not wire or wire.a.part in parts or wire.b.part in parts:
-                found.add(key)
-            elif key in self._wires and regions:
-                left, top, right, bottom = wire_region(plant, wire)
-                if any(b[0] < right and left < b[2] and b[1] < bottom and top < b[3] for b in regions):
-                    found.add(key)
+        """Wires that have changed, end on a changed part, or run near where an obstacle came or went."""
+        found: set[str] = set()
+        if before.wires is not self._plant.wires:
+            found = {
+                key
+                for key in before.wires.keys() | self._plant.wires.keys()
+                if everything or before.wires.get(key) is not self._plant.wires.get(key)
+            }
+            self._index(before, found)
+        elif everything:
+            found = set(self._plant.wires)
+        for part in parts:
+            found |= self._wires_of.get(part, set())
+        for region in regions:
+            found |= self._wire_regions.keys_near(region)
         return found
+
+    def _index(self, before: Plant, changed: set[str]) -> None:
+        """Which wires end on which part."""
+        for key in changed:
+            for plant, add in ((before, False), (self._plant, True)):
+                wire = plant.wires.get(key)
+                for end in wire.ends if wire is not None else ():
+                    keys = self._wires_of.setdefault(end.part, set())
+                    keys.add(key) if add else keys.discard(key)
 
     def _renew_wires(self, keys: set[str]) -> set[str]:
         touched = set()
@@ -115,9 +133,11 @@ class SheetDrawing:
             old = self._wires.get(key)
             if wire is None or (wire.a.part not in self._parts and wire.b.part not in self._parts):
                 self._wires.pop(key, None)
+                self._wire_regions.put(key, None)
                 new = None
             else:
                 new = self._wires[key] = wire_picture(self._plant, wire, self._sheet, self._obstacles, self._roles)
+                self._wire_regions.put(key, wire_region(self._plant, wire))
             if new != old:
                 touched.add(key)
         return touched

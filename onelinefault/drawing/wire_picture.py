@@ -20,6 +20,7 @@ from onelinefault.model.plant import End, Plant, Point, Sheet, Wire
 WIRE_DU = 2.0
 _REACH = 12  # modules round the ends of a wire within which it takes notice of obstacles
 _CELL = 16
+_NO_KEYS: frozenset[str] = frozenset()
 ZONE_MODULES = 20  # a zone of the border grid: 50 mm (ISO 5457)
 
 
@@ -55,7 +56,7 @@ def obstacle(picture: PartPicture) -> GridBox:
 
 
 class Obstacles:
-    """What wires run round, found by place. A wire looks only at what stands near it, so its way depends on no more."""
+    """Boxes found by place: what wires run round. A wire looks only at what stands near it."""
 
     def __init__(self) -> None:
         self._boxes: dict[str, GridBox] = {}
@@ -78,12 +79,20 @@ class Obstacles:
 
     def near(self, region: GridBox) -> tuple[GridBox, ...]:
         """All obstacles that touch a region, in an order that depends on their places only."""
+        return tuple(sorted(self._boxes[key] for key in self.keys_near(region)))
+
+    def keys_near(self, region: GridBox) -> set[str]:
+        """The keys of all that touch a region."""
         keys: set[str] = set()
         for cell in _cells(region):
-            keys |= self._cells.get(cell, set())
+            keys |= self._cells.get(cell, _NO_KEYS)
         left, top, right, bottom = region
-        boxes = (self._boxes[key] for key in keys)
-        return tuple(sorted(b for b in boxes if b[0] < right and left < b[2] and b[1] < bottom and top < b[3]))
+        found = set()
+        for key in keys:
+            box = self._boxes[key]
+            if box[0] < right and left < box[2] and box[1] < bottom and top < box[3]:
+                found.add(key)
+        return found
 
 
 def _cells(box: GridBox) -> list[tuple[int, int]]:

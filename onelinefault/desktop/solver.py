@@ -81,7 +81,7 @@ class _Worker(QObject):
         if key != self._key or self._kept[0] is not request.plant:
             study = study_of(request.plant, request.case, request.arrangement)
             rows = tuple(study.all_buses())
-            findings = tuple(all_findings(request.plant, request.case, request.arrangement))
+            findings = tuple(all_findings(request.plant, request.case, request.arrangement, study))
             self._key, self._kept = key, (request.plant, study, rows, findings)
         _, study, rows, findings = self._kept
         result, trouble = None, ""

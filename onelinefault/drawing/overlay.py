@@ -18,7 +18,7 @@ class Flow:
 class Tag:
     """A small callout with figures.
 
-    key: "fault", or the id of the wire or part it speaks of (its place may be kept under this key). main: the large
+    key: "fault", the id of a wire, or "PART TERMINAL" (the place chosen by hand is kept under it). main: the large
     figure; lines: the small ones below. filled: drawn in the fault's colour (the tag of the fault itself).
     """
 

@@ -23,6 +23,8 @@ _LINE_DU: Final = 9.5
 _LINE_STEP: Final = 12.0
 _PAD: Final = 8.0
 _PIN_HEAD_DU: Final = 26.0
+_PIN_CLEARANCE: Final = 19.0
+_RIBBON_CLEARANCE: Final = 10.0
 
 
 @dataclass(frozen=True)
@@ -125,7 +127,13 @@ def _tags(
         pinned = (anchor[0] + moved[0] * MODULE_DU, anchor[1] + moved[1] * MODULE_DU) if moved else None
         requests.append(
             TagRequest(
-                key=tag.key, anchor=anchor, width=width, height=height, priority=10 if tag.filled else 1, pinned=pinned
+                key=tag.key,
+                anchor=anchor,
+                width=width,
+                height=height,
+                priority=10 if tag.filled else 1,
+                pinned=pinned,
+                clearance=_PIN_CLEARANCE if tag.filled else _RIBBON_CLEARANCE,
             )
         )
         wanted[tag.key], anchors[tag.key] = tag, anchor
@@ -147,9 +155,9 @@ def _anchor(plant: Plant, picture: SheetPicture, data: OverlayData, key: str) ->
         return x, y - _PIN_HEAD_DU
     if key in picture.wires:
         return middle_of([(x * MODULE_DU, y * MODULE_DU) for x, y in picture.wires[key].path])
-    if key in picture.parts:
-        part = plant.parts[key]
-        x, y = terminal_place(part, part.terminals[0].name)
+    part_id, _, terminal = key.partition(" ")
+    if part_id in picture.parts and terminal:
+        x, y = terminal_place(plant.parts[part_id], terminal)
         return x * MODULE_DU, y * MODULE_DU
     return None
 

@@ -90,7 +90,7 @@ def _runs_as_counted(phases_ka: ComplexArray, node: int, result: FaultResult) ->
     transformer on the way turns that by up to 30 degrees. So the strongest phase is taken, and its lag compared with
     the middle of the possible range, 45 degrees.
     """
-    phase = int(abs(phases_ka).argmax())
+    phase = strongest_phase(phases_ka)
     power = result.prefault_voltages_kv[node, phase] * phases_ka[phase].conjugate()
     return bool(power.real + power.imag >= 0)
 
@@ -137,27 +137,32 @@ def _flow_tags(plant: Plant, result: FaultResult, detail: int) -> list[Tag]:
     if detail < 2:
         return []
     tags = []
-    for part_id, (node, ka) in _feeders(plant, result).items():
+    for (part_id, terminal), node, ka in _feeders(plant, result):
         towards = ka if _runs_as_counted(ka, node, result) else -ka
-        strongest = complex(towards[int(abs(towards).argmax())])
+        strongest = complex(towards[strongest_phase(towards)])
         lines = [f"{angle_text(strongest)} {plant.parts[part_id].name}".strip()]
         if detail >= 3:
             lines += _phase_lines(towards)
-        tags.append(Tag(part_id, current_text(abs(strongest)), tuple(lines)))
+        tags.append(Tag(f"{part_id} {terminal}", current_text(abs(strongest)), tuple(lines)))
     return tags
 
 
-def _feeders(plant: Plant, result: FaultResult) -> dict[str, tuple[int, ComplexArray]]:
-    """Parts that feed the faulted node (not its closed devices) and sources elsewhere: node and terminal current."""
-    found: dict[str, tuple[int, ComplexArray]] = {}
+def _feeders(plant: Plant, result: FaultResult) -> list[tuple[tuple[str, str], int, ComplexArray]]:
+    """Terminals where parts feed the faulted node, and those of sources elsewhere, with node and current."""
+    found = []
     node_of = result.network.node_of
     sources = {share.part for share in result.sources}
     for key, ka in result.terminal_ka.items():
         part, node = plant.parts.get(key[0]), node_of.get(key)
         if part is None or node is None or hasattr(part, "closed") or part.kind == "bus":
             continue
-        at_fault = node == result.node
         strong = float(max(abs(ka))) > max(_LEAST_SHARE * result.ik_ka, 1e-5)
-        if strong and (at_fault or (part.id in sources and part.id not in found)):
-            found[part.id] = (node, ka)
+        if strong and (node == result.node or part.id in sources):
+            found.append((key, node, ka))
     return found
+
+
+def strongest_phase(phases_ka: ComplexArray) -> int:
+    """Index of the largest of three phase currents, shape (3,); the first of those that are equal but for rounding."""
+    sizes = abs(phases_ka)
+    return int((sizes > sizes.max() * (1 - 1e-6)).argmax()) if sizes.max() > 0 else 0

@@ -26,8 +26,8 @@ DATA = OverlayData(
     voltage_left={IDS["board"]: 0.0, IDS["intake"]: 61.0},
     tags=(
         Tag("fault", "12.9 kA", ("peak 33.1 kA  X/R 21",), filled=True),
-        Tag(IDS["g1"], "2.90 kA", ("∠ −86° G1",)),
-        Tag(IDS["t1"], "8.41 kA", ("∠ −87° T1",)),
+        Tag(f"{IDS['g1']} line", "2.90 kA", ("∠ −86° G1",)),
+        Tag(f"{IDS['t1']} low", "8.41 kA", ("∠ −87° T1",)),
     ),
     largest_ka=10.0,
 )
@@ -63,10 +63,10 @@ def test_tags_keep_clear_of_symbols_each_other_and_the_title_block() -> None:
 
 
 def test_a_tag_moved_by_hand_stays_where_it_was_put() -> None:
-    moved = apply(PLANT, Edit("Move a tag", tags={IDS["g1"]: (10, -6)}))
+    moved = apply(PLANT, Edit("Move a tag", tags={f"{IDS['g1']} line": (10, -6)}))
     overlay = overlay_picture(moved, PICTURE, DATA)
-    x, y = overlay.anchors[IDS["g1"]]
-    assert (overlay.boxes[IDS["g1"]].left, overlay.boxes[IDS["g1"]].top) == (x + 100, y - 60)
+    x, y = overlay.anchors[f"{IDS['g1']} line"]
+    assert ((box := overlay.boxes[f"{IDS['g1']} line"]).left, box.top) == (x + 100, y - 60)
 
 
 def test_the_pin_stands_where_it_was_put() -> None:

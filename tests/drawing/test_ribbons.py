@@ -200,6 +200,12 @@ def test_a_narrow_turn_narrows_the_ribbon():
     assert min(x for x, y in outline) == pytest.approx(-5.0)
 
 
+def test_a_corner_just_behind_a_symbol_does_not_reach_back_over_it():
+    symbol = (10, -20, 47, 20)
+    _, after = ribbon([(0, 0), (50, 0), (50, 50)], 16, 16, [symbol])
+    assert all(x >= 47 or y >= 20 for x, y in after)
+
+
 def test_no_current_no_ribbon():
     assert ribbon([(0, 0), (0, 50)], 0, 0) == []
     assert ribbon([(3, 3)], 8, 8) == []

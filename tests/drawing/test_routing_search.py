@@ -5,7 +5,7 @@ from __future__ import annotations
 import heapq
 from itertools import pairwise
 
-from hypothesis import given, settings
+from hypothesis import example, given, settings
 from hypothesis import strategies as st
 
 from onelinefault.drawing.routing_lattice import COMPASS, lattice
@@ -108,6 +108,7 @@ def _wires(draw):
 
 @settings(max_examples=150, deadline=None)
 @given(start=_points, starts=_ways, end=_points, ends=_ways, boxes=_boxes(), wires=_wires())
+@example((0, 0), {0: 0, 1: 0, 2: 1}, (0, 2), {0: 1, 1: 0}, [], [((0, 1), (0, 0))])  # equal bends at unequal levels
 def test_the_path_is_the_best_of_all(start, starts, end, ends, boxes, wires):
     if abs(start[0] - end[0]) + abs(start[1] - end[1]) < 2:
         return  # the caller joins neighbours itself

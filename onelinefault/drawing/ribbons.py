@@ -110,8 +110,9 @@ def chevrons(polyline: Sequence[Point], size: float, spacing: float) -> list[tup
 
 
 def _off_corners(stations: Sequence[float], size: float, wanted: float) -> float | None:
-    """The place nearest to the wanted one that is half a size from all corners and ends; None if there is no room."""
-    rooms = [(start + size / 2, stop - size / 2) for start, stop in pairwise(stations) if stop - start >= size]
+    """The place nearest to the wanted one that is a size from all corners, in short segments half-way; None if none."""
+    insets = [(start, stop, min(size, (stop - start) / 2)) for start, stop in pairwise(stations)]
+    rooms = [(start + inset, stop - inset) for start, stop, inset in insets if inset >= size / 2]
     places = [min(max(wanted, start), stop) for start, stop in rooms]
     return min(places, key=lambda place: abs(place - wanted), default=None)
 

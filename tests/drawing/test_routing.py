@@ -31,8 +31,8 @@ _RIM = 10  # modules round both ends that are searched first
 
 
 def _meets(box: Box, a: Point, b: Point) -> bool:
-    """Whether the open inside of the box meets the closed segment, by looking at every tenth of a module."""
-    count = max(10 * (abs(a[0] - b[0]) + abs(a[1] - b[1])), 1)
+    """Whether the open inside of the box meets the closed segment, by looking at every quarter of a module."""
+    count = max(4 * (abs(a[0] - b[0]) + abs(a[1] - b[1])), 1)
     places = ((a[0] + (b[0] - a[0]) * k / count, a[1] + (b[1] - a[1]) * k / count) for k in range(count + 1))
     return any(box[0] < x < box[2] and box[1] < y < box[3] for x, y in places)
 

@@ -15,8 +15,8 @@ _LOW, _HIGH = -4, 12  # region searched, modules
 
 
 def _meets(box, a, b):
-    """Whether the open inside of the box meets the step from a to b, by looking at every tenth of a module."""
-    places = ((a[0] + (b[0] - a[0]) * k / 10, a[1] + (b[1] - a[1]) * k / 10) for k in range(11))
+    """Whether the open inside of the box meets the step from a to b, by looking at every quarter of a module."""
+    places = ((a[0] + (b[0] - a[0]) * k / 4, a[1] + (b[1] - a[1]) * k / 4) for k in range(5))
     return any(box[0] < x < box[2] and box[1] < y < box[3] for x, y in places)
 
 

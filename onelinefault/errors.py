@@ -10,6 +10,7 @@ OneLineFaultError
 │   ├── NoSuchPlaceError  a fault was asked for where nothing is
 │   ├── SingularNetworkError  the network equations have no single solution
 │   └── StoppedError      the user stopped a long calculation
+├── TablesError           the typical data shipped with the program cannot be read
 └── OutputError           a drawing or table that cannot be written
 """
 
@@ -61,6 +62,10 @@ class SingularNetworkError(StudyError):
 
 class StoppedError(StudyError):
     """A long calculation was stopped by the user."""
+
+
+class TablesError(OneLineFaultError):
+    """The tables of typical data that are shipped with the program are missing or damaged."""
 
 
 class OutputError(OneLineFaultError):

@@ -31,7 +31,8 @@ TerminalKey = tuple[str, str]  # part id, terminal name
 class Node:
     """Terminals at one potential. label: the bus's name, or a phrase that finds the place on the sheet.
 
-    inner: the star point of a three-winding transformer, no terminal on the sheet. bus: id of its (first) bus, or "".
+    inner: the star point of a three-winding transformer, no terminal on the sheet. buses: ids of its buses, the first
+    gives the label. known: whether anything states the nominal voltage; where nothing does it is a mere 1 kV.
     """
 
     label: str
@@ -39,6 +40,7 @@ class Node:
     terminals: tuple[TerminalKey, ...]
     buses: tuple[str, ...] = ()
     inner: bool = False
+    known: bool = True
 
 
 @dataclass(frozen=True, slots=True)
@@ -104,12 +106,14 @@ class Network:
     @property
     def base_ka(self) -> FloatArray:
         """Base current of each node in kA, shape (n,)."""
-        return self.base_mva / (np.sqrt(3) * self.nominal_kv)
+        ka: FloatArray = self.base_mva / (np.sqrt(3) * self.nominal_kv)
+        return ka
 
     @property
     def base_ohm(self) -> FloatArray:
         """Base impedance of each node in ohm, shape (n,)."""
-        return self.nominal_kv**2 / self.base_mva
+        ohm: FloatArray = self.nominal_kv**2 / self.base_mva
+        return ohm
 
 
 @dataclass(frozen=True, slots=True)

@@ -5,7 +5,9 @@ faulted node's phase-a voltage before the fault at 0°, carried through each tra
 """
 
 from collections.abc import Mapping
-from dataclasses import dataclass
+from dataclasses import dataclass, field
+
+import numpy as np
 
 from onelinefault.engine.case import Case
 from onelinefault.engine.network import ComplexArray, FloatArray, Network, TerminalKey
@@ -35,8 +37,9 @@ class FaultResult:
     3 I0. z_ohm: Z1, Z2, Z0 at the fault; None where open. voltages_kv: phase-to-earth at all nodes, shape (n, 3).
     terminal_ka: current from the node into the part at each terminal, shape (3,) each. wire_ka: from end a to end b.
     neutral_ka: current to earth in each earthed star point, by (part, side). x_over_r: of the impedance the kind's
-    current flows through. peak_ka: largest phase, asymmetrical peak at half a cycle. assumptions: findings about typical
-    or guessed data the result rests on.
+    current flows through, not-a-number where none flows. peak_ka: largest phase, asymmetrical peak at half a cycle.
+    findings: what is to be said about this fault, such as typical or guessed data that it rests on. fault_kv:
+    phase-to-earth voltages at the fault itself, shape (3,). A fault along a branch has the nearer end as its node.
     """
 
     fault: Fault
@@ -59,6 +62,14 @@ class FaultResult:
     neutral_ka: Mapping[tuple[str, str], complex]
     sources: tuple[SourceShare, ...]
     findings: tuple[Finding, ...] = ()
+    fault_kv: ComplexArray = field(default_factory=lambda: np.zeros(3, np.complex128))
+
+    @property
+    def z_pu(self) -> tuple[complex | None, complex | None, complex | None]:
+        """Z1, Z2, Z0 at the fault in per unit of the plant's base; None where open."""
+        base = self.nominal_kv**2 / self.network.base_mva
+        one, two, zero = (None if ohm is None else ohm / base for ohm in self.z_ohm)
+        return one, two, zero
 
     @property
     def ik_ka(self) -> float:

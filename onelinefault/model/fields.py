@@ -4,6 +4,7 @@ A rating of a part is a dataclass field made by ``rating(...)``; its metadata ho
 """
 
 import dataclasses
+import re
 from collections.abc import Callable, Mapping
 from dataclasses import dataclass
 from enum import StrEnum
@@ -120,10 +121,20 @@ def rating(
     shown = unit or kind.default_unit
     reader = _quantity_reader(kind, shown)
     return _field(
-        label, reader, kind.name, unit=shown, minimum=at_least, maximum=at_most, above_zero=above_zero and at_least is None,
-        alternatives=alternatives, group=group, help=help, default=reader(default) if default else None,
-        required=required, unit_kind=kind,
-    )  # fmt: skip
+        label,
+        reader,
+        kind.name,
+        unit=shown,
+        minimum=at_least,
+        maximum=at_most,
+        above_zero=above_zero and at_least is None,
+        alternatives=alternatives,
+        group=group,
+        help=help,
+        default=reader(default) if default else None,
+        required=required,
+        unit_kind=kind,
+    )
 
 
 def choice(
@@ -152,7 +163,7 @@ def whole_number(
     """A dataclass field holding a count."""
 
     def read(text: str) -> int:
-        if not text.strip().lstrip("+").isdigit():
+        if not re.fullmatch(r"\+?\d{1,9}", text.strip()):
             raise EntryError(f"{text.strip()}: expected a whole number")
         return int(text)
 
@@ -205,9 +216,13 @@ def _field(label: str, read: Callable[[str], Value], kind: str, **more: Any) -> 
     return dataclasses.field(default=None, metadata={"field": description})
 
 
-@lru_cache(maxsize=64)
 def fields_of(part_class: type) -> Mapping[str, Field]:
     """All described fields of a dataclass by name, in the order of declaration."""
+    return _fields_of(part_class)
+
+
+@lru_cache(maxsize=64)
+def _fields_of(part_class: type) -> Mapping[str, Field]:
     found = {}
     for item in dataclasses.fields(part_class):
         if "field" in item.metadata:

@@ -6,6 +6,7 @@ from typing import Any, ClassVar, Self
 
 from onelinefault.errors import EntryError
 from onelinefault.model.fields import Basis, Field, Value, fields_of, text_of
+from onelinefault.model.quantity import Quantity
 
 
 @dataclass(frozen=True, slots=True)
@@ -87,6 +88,14 @@ def describe(part_class: type, name: str) -> Field:
         known = ", ".join(fields)
         raise EntryError(f"{getattr(part_class, 'label', part_class.__name__)} has no rating {name}; it has {known}")
     return fields[name]
+
+
+def number_in(part: Part, name: str, unit: str) -> float | None:
+    """A rating in use as a number in a unit; None when there is none, or when it is of another dimension."""
+    value = part.value(name)
+    if not isinstance(value, Quantity) or value.dimension != Quantity(1.0, unit, "").dimension:
+        return None
+    return value.to(unit)
 
 
 def place_of(part: Part, dx: float, dy: float) -> tuple[float, float]:

@@ -94,8 +94,9 @@ _SPELLINGS = {
 _SHOWN = {"ohm": "Ω", "mohm": "mΩ", "kohm": "kΩ", "ohm/km": "Ω/km", "mohm/m": "mΩ/m", "ohm/m": "Ω/m",
           "ohm/kft": "Ω/kft", "ohm/ft": "Ω/ft", "ohm/mi": "Ω/mi", "uF/km": "µF/km", "uF/kft": "µF/kft",
           "ohm·m": "Ω·m"}  # fmt: skip
-# upper and lower case never decide between milli and mega: these are refused, not guessed
-_AMBIGUOUS = {"mva": "MVA", "mw": "MW", "mvar": "Mvar", "Mohm": "ohm", "MΩ": "ohm", "mΩ/km": "ohm/km"}
+# upper and lower case never decide between milli and mega: any spelling of these with the wrong one is refused
+_MILLI_OR_MEGA = ("MVA", "MW", "Mvar", "mohm", "mohm/m")
+_AMBIGUOUS = {"mω/km": "ohm/km", "mohm/km": "ohm/km"}  # no unit here, but easily taken for one
 
 
 @dataclass(frozen=True)
@@ -187,14 +188,18 @@ def read_unit(text: str) -> str | None:
         return text
     if text in _SPELLINGS:
         return _SPELLINGS[text]
-    if text in _AMBIGUOUS:
-        raise EntryError(f"{text}: write {show_unit(_AMBIGUOUS[text])} (m is milli, M is mega)")
-    folded = {u.casefold(): u for u in (*_UNITS, *_SPELLINGS)}
-    found = folded.get(text.casefold())
-    return _SPELLINGS.get(found, found) if found else None
+    folded = text.casefold()
+    found = _FOLDED.get(folded)
+    if found in _MILLI_OR_MEGA and text[0] != found[0]:
+        raise EntryError(f"{text}: m is milli, M is mega; write {show_unit(found)} if that is meant")
+    if folded in _AMBIGUOUS:
+        raise EntryError(f"{text}: write {show_unit(_AMBIGUOUS[folded])}")
+    return found
 
 
-_NUMBER = re.compile(r"[+-]?(?:\d[\d  ' ]*(?:[.,][\d.,]*)?|[.,]\d+)(?:[eE][+-]?\d+)?")
+_FOLDED = {s.casefold(): _SPELLINGS.get(s, s) for s in (*_SPELLINGS, *_UNITS)}
+_NUMBER = re.compile(r"[+-]?(?:\d(?:\d|[\s']+(?=\d))*(?:[.,][\d.,]*)?|[.,]\d+)(?:[eE][+-]?\d+)?")
+_GROUPED = re.compile(r"[+-]?\d{1,3}(?:[\s']\d{3})+(?:[.,]\d*)?(?:[eE][+-]?\d+)?")
 
 
 def read_number(text: str) -> float:
@@ -202,7 +207,10 @@ def read_number(text: str) -> float:
 
     Raises EntryError when it is no number, or when a comma could mean thousands as well as decimals ("1,200").
     """
-    digits = re.sub(r"[\s  ']", "", text.strip().replace("−", "-"))
+    plain = text.strip().replace("−", "-")
+    if re.search(r"\d[\s']+\d", plain) and not _GROUPED.fullmatch(plain):
+        raise EntryError(f"{text.strip()} cannot be read as one number")
+    digits = re.sub(r"[\s']", "", plain)
     if "," in digits and "." in digits:
         thousands = "," if digits.rindex(",") < digits.rindex(".") else "."
         if not re.fullmatch(rf"[+-]?\d{{1,3}}(\{thousands}\d{{3}})+[.,]\d*(e[+-]?\d+)?", digits, re.I):

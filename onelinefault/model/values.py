@@ -126,11 +126,13 @@ class ConductorSize:
 
 
 def awg_area_mm2(gauge: str) -> float:
-    """Area in mm² of an American wire gauge "14" ... "4/0" (ASTM B258: d = 0.127 mm · 92^((36−n)/39)).
+    """Area in mm² of an American wire gauge "14" ... "4/0" or "0000" (ASTM B258: d = 0.127 mm · 92^((36−n)/39)).
 
     Raises EntryError for a gauge that does not exist.
     """
-    n = 1 - int(gauge[0]) if re.fullmatch(r"[1-4]/0", gauge) else int(gauge) if gauge.isdigit() else 99
+    if re.fullmatch(r"0{1,4}", gauge):
+        gauge = f"{len(gauge)}/0"
+    n = 1 - int(gauge[0]) if re.fullmatch(r"[1-4]/0", gauge) else int(gauge) if gauge.isdecimal() else 99
     if not -3 <= n <= 36:
         raise EntryError(f"{gauge} AWG is not a wire gauge")
     diameter_mm: float = 0.127 * 92.0 ** ((36 - n) / 39)
@@ -147,7 +149,7 @@ def read_conductor_size(text: str) -> ConductorSize:
     if match is None or match.group(1) == "0":
         raise EntryError(f"{text or 'nothing'}: write a size like 240 mm², 2x240 mm², 3c 95 mm², 4/0 AWG or 500 kcmil")
     runs, cores, number, unit = int(match.group(1) or 1), int(match.group(2) or 1), match.group(3), match.group(4)
-    if unit.upper() == "AWG" or "/" in number:
+    if unit.upper() == "AWG" or ("/" in number and not unit):
         return ConductorSize(awg_area_mm2(number), runs, cores, number, text)
     size = Quantity(read_number(number), read_unit(unit) or "" if unit else "mm²", text)
     if size.dimension != "area" or size.value <= 0:

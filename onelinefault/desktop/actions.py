@@ -1,6 +1,7 @@
 """Every command of the window: its words, keys and plain sentence. Menus, help and context menus are built from here.
 
-A command's key is also the name of the method that does it, in one of the objects given to ``make_actions``.
+A command's key is also the name of the method that does it, in one of the objects given to ``make_actions``. The words
+stand here in English; translators find them under the context "Commands".
 """
 
 from __future__ import annotations
@@ -9,12 +10,11 @@ from collections.abc import Callable, Iterable, Mapping
 from dataclasses import dataclass
 from typing import Any, Final
 
-from PySide6.QtCore import QT_TRANSLATE_NOOP, QCoreApplication, QObject
+from PySide6.QtCore import QCoreApplication, QObject
 from PySide6.QtGui import QAction, QActionGroup, QKeySequence
 from PySide6.QtWidgets import QMenu, QMenuBar
 
 _CONTEXT: Final = "Commands"
-Words = QT_TRANSLATE_NOOP
 
 
 @dataclass(frozen=True, slots=True)
@@ -51,143 +51,109 @@ def _c(key: str, words: str, tip: str, *keys: str, **more: Any) -> Command:
 
 COMMANDS: Final[tuple[Command, ...]] = (
     # File
-    _c("new_plant", Words("Commands", "&New"), Words("Commands", "Start a new plant on an empty sheet"), "Ctrl+N"),
-    _c("open_plant", Words("Commands", "&Open…"), Words("Commands", "Open a plant file"), "Ctrl+O"),
-    _c("save", Words("Commands", "&Save"), Words("Commands", "Save the plant to its file"), "Ctrl+S"),
-    _c("save_as", Words("Commands", "Save &as…"), Words("Commands", "Save under another name"), "Ctrl+Shift+S"),
-    _c("page_setup", Words("Commands", "Pa&ge setup…"),
-       Words("Commands", "Paper of the sheet, paper of the printer, true scale or fitted"), "Ctrl+Shift+P"),
-    _c("print_preview", Words("Commands", "Print pre&view…"),
-       Words("Commands", "See the sheets as the printer will show them")),
-    _c("print_sheets", Words("Commands", "&Print…"), Words("Commands", "Print the sheets with the figures shown"),
-       "Ctrl+P", short=Words("Commands", "Print")),
-    _c("export_drawing", Words("Commands", "Export &drawing…"),
-       Words("Commands", "Write the annotated sheets as PDF, SVG or PNG"), "Ctrl+E"),
-    _c("export_table", Words("Commands", "Export &bus table…"),
-       Words("Commands", "Write the fault currents of all buses as a table")),
-    _c("close_window", Words("Commands", "&Quit"), Words("Commands", "Close the window; asks about unsaved work"),
-       "Ctrl+Q"),
+    _c("new_plant", "&New", "Start a new plant on an empty sheet", "Ctrl+N"),
+    _c("open_plant", "&Open…", "Open a plant file", "Ctrl+O"),
+    _c("save", "&Save", "Save the plant to its file", "Ctrl+S"),
+    _c("save_as", "Save &as…", "Save under another name", "Ctrl+Shift+S"),
+    _c("page_setup", "Pa&ge setup…", "Paper of the sheet, paper of the printer, true scale or fitted", "Ctrl+Shift+P"),
+    _c("print_preview", "Print pre&view…", "See the sheets as the printer will show them"),
+    _c("print_sheets", "&Print…", "Print the sheets with the figures shown", "Ctrl+P", short="Print"),
+    _c("export_drawing", "Export &drawing…", "Write the annotated sheets as PDF, SVG or PNG", "Ctrl+E"),
+    _c("export_table", "Export &bus table…", "Write the fault currents of all buses as a table"),
+    _c("close_window", "&Quit", "Close the window; asks about unsaved work", "Ctrl+Q"),
     # Edit
-    _c("undo", Words("Commands", "&Undo"), Words("Commands", "Take the last step back"), "Ctrl+Z",
-       short=Words("Commands", "Undo")),
-    _c("redo", Words("Commands", "&Redo"), Words("Commands", "Do the step again that was taken back"), "Ctrl+Shift+Z",
-       "Ctrl+Y", short=Words("Commands", "Redo")),
-    _c("cut", Words("Commands", "Cu&t"), Words("Commands", "Take the selected parts away and keep a copy"), "Ctrl+X"),
-    _c("copy", Words("Commands", "&Copy"), Words("Commands", "Copy the selected parts and the wires among them"),
-       "Ctrl+C"),
-    _c("paste", Words("Commands", "&Paste"), Words("Commands", "Put copied parts at the pointer"), "Ctrl+V"),
-    _c("duplicate", Words("Commands", "D&uplicate"), Words("Commands", "Put a copy of the selected parts beside them"),
-       "Ctrl+D"),
-    _c("delete", Words("Commands", "&Delete"),
-       Words("Commands", "Take the selection away; a part in series heals into its wire"), "Del", "Backspace"),
-    _c("select_all", Words("Commands", "Select &all"), Words("Commands", "Select everything on this sheet"), "Ctrl+A"),
-    _c("find", Words("Commands", "&Find by name…"), Words("Commands", "Find a part by its name on any sheet"), "Ctrl+F"),
-    _c("rename", Words("Commands", "Re&name"), Words("Commands", "Rename the selected part in place"), "F2"),
+    _c("undo", "&Undo", "Take the last step back", "Ctrl+Z", short="Undo"),
+    _c("redo", "&Redo", "Do the step again that was taken back", "Ctrl+Shift+Z", "Ctrl+Y", short="Redo"),
+    _c("cut", "Cu&t", "Take the selected parts away and keep a copy", "Ctrl+X"),
+    _c("copy", "&Copy", "Copy the selected parts and the wires among them", "Ctrl+C"),
+    _c("paste", "&Paste", "Put copied parts at the pointer", "Ctrl+V"),
+    _c("duplicate", "D&uplicate", "Put a copy of the selected parts beside them", "Ctrl+D"),
+    _c("delete", "&Delete", "Take the selection away; a part in series heals into its wire", "Del", "Backspace"),
+    _c("select_all", "Select &all", "Select everything on this sheet", "Ctrl+A"),
+    _c("find_part", "&Find by name…", "Find a part by its name on any sheet", "Ctrl+F"),
+    _c("rename", "Re&name", "Rename the selected part in place", "F2"),
     # Part
-    _c("place_part", Words("Commands", "&Place a part…"),
-       Words("Commands", "Type a few letters of a part's kind at the pointer, Enter places it"), "A", "/"),
-    _c("draw_wire", Words("Commands", "Draw a &wire"), Words("Commands", "Draw a wire click by click"), "W"),
-    _c("rotate", Words("Commands", "&Rotate"), Words("Commands", "Turn the selection by a quarter, clockwise"), "R"),
-    _c("mirror", Words("Commands", "&Mirror"), Words("Commands", "Mirror the selection left to right"), "M"),
-    _c("open_close", Words("Commands", "&Open or close"), Words("Commands", "Open or close the selected devices"), "O"),
-    _c("in_out_of_service", Words("Commands", "&In or out of service"),
-       Words("Commands", "Take the selected parts out of service, or back into it"), "I"),
-    _c("align_left", Words("Commands", "Align &left"), Words("Commands", "Line the selection up on the left")),
-    _c("align_centre", Words("Commands", "Align &centres"),
-       Words("Commands", "Put the selected parts under one another")),
-    _c("align_right", Words("Commands", "Align &right"), Words("Commands", "Line the selection up on the right")),
-    _c("align_top", Words("Commands", "Align &top"), Words("Commands", "Line the selection up at the top")),
-    _c("align_middle", Words("Commands", "Align &middles"),
-       Words("Commands", "Put the selected parts beside one another")),
-    _c("align_bottom", Words("Commands", "Align &bottom"), Words("Commands", "Line the selection up at the bottom")),
-    _c("distribute_across", Words("Commands", "Distribute &across"),
-       Words("Commands", "Space the selected parts evenly from left to right")),
-    _c("distribute_down", Words("Commands", "Distribute &down"),
-       Words("Commands", "Space the selected parts evenly from top to bottom")),
-    _c("reroute", Words("Commands", "Re-ro&ute"),
-       Words("Commands", "Forget the corners set by hand in the selected wires and parts' wires"), "Ctrl+R"),
+    _c("place_part", "&Place a part…", "Type a few letters of a part's kind at the pointer, Enter places it", "A", "/"),
+    _c("draw_wire", "Draw a &wire", "Draw a wire click by click", "W"),
+    _c("rotate", "&Rotate", "Turn the selection by a quarter, clockwise", "R"),
+    _c("mirror", "&Mirror", "Mirror the selection left to right", "M"),
+    _c("open_close", "&Open or close", "Open or close the selected devices", "O"),
+    _c("in_out_of_service", "&In or out of service", "Take the selected parts out of service, or back into it", "I"),
+    _c("align_left", "Align &left", "Line the selection up on the left"),
+    _c("align_centre", "Align &centres", "Put the selected parts under one another"),
+    _c("align_right", "Align &right", "Line the selection up on the right"),
+    _c("align_top", "Align &top", "Line the selection up at the top"),
+    _c("align_middle", "Align &middles", "Put the selected parts beside one another"),
+    _c("align_bottom", "Align &bottom", "Line the selection up at the bottom"),
+    _c("distribute_across", "Distribute &across", "Space the selected parts evenly from left to right"),
+    _c("distribute_down", "Distribute &down", "Space the selected parts evenly from top to bottom"),
+    _c("reroute", "Re-ro&ute", "Forget the corners set by hand in the selected wires and parts' wires", "Ctrl+R"),
     # View
-    _c("zoom_in", Words("Commands", "Zoom &in"), Words("Commands", "Nearer"), "Ctrl++", "Ctrl+=", "+"),
-    _c("zoom_out", Words("Commands", "Zoom &out"), Words("Commands", "Farther"), "Ctrl+-", "-"),
-    _c("fit", Words("Commands", "&Fit sheet"), Words("Commands", "Show the whole sheet"), "Ctrl+0"),
-    _c("fit_selection", Words("Commands", "Fit &selection"), Words("Commands", "Show what is selected"), "Ctrl+9"),
-    _c("detail_1", Words("Commands", "Detail &1: ribbons and gauges"),
-       Words("Commands", "Show where the current flows and what voltage is left"), "Ctrl+1", among="detail"),
-    _c("detail_2", Words("Commands", "Detail &2: plus main figures"),
-       Words("Commands", "Show the main figures too"), "Ctrl+2", among="detail"),
-    _c("detail_3", Words("Commands", "Detail &3: plus phases and sequences"),
-       Words("Commands", "Show phases, angles and sequence values too"), "Ctrl+3", among="detail"),
-    _c("drawer", Words("Commands", "Open or close the &drawer"), Words("Commands", "Show or hide the tables"), "F9"),
-    _c("next_panel", Words("Commands", "Go to the &next panel"),
-       Words("Commands", "Move the keyboard to the next panel"), "F6"),
-    _c("restore_panels", Words("Commands", "&Restore panels"),
-       Words("Commands", "Put all panels back where they were at first")),
-    _c("units_metric", Words("Commands", "New plants: &metric, 50 Hz, ISO paper"),
-       Words("Commands", "What a new plant starts with"), among="units"),
-    _c("units_us", Words("Commands", "New plants: &US, 60 Hz, ANSI paper"),
-       Words("Commands", "What a new plant starts with"), among="units"),
+    _c("zoom_in", "Zoom &in", "Nearer", "Ctrl++", "Ctrl+=", "+"),
+    _c("zoom_out", "Zoom &out", "Farther", "Ctrl+-", "-"),
+    _c("fit", "&Fit sheet", "Show the whole sheet", "Ctrl+0"),
+    _c("fit_selection", "Fit &selection", "Show what is selected", "Ctrl+9"),
+    _c("detail_1", "Detail &1: ribbons and gauges", "Show where the current flows and what voltage is left",
+       "Ctrl+1", among="detail"),
+    _c("detail_2", "Detail &2: plus main figures", "Show the main figures too", "Ctrl+2", among="detail"),
+    _c("detail_3", "Detail &3: plus phases and sequences", "Show phases, angles and sequence values too", "Ctrl+3",
+       among="detail"),
+    _c("toggle_drawer", "Open or close the &drawer", "Show or hide the tables", "F9"),
+    _c("next_panel", "Go to the &next panel", "Move the keyboard to the next panel", "F6"),
+    _c("restore_panels", "&Restore panels", "Put all panels back where they were at first"),
+    _c("units_metric", "New plants: &metric, 50 Hz, ISO paper", "What a new plant starts with", among="units"),
+    _c("units_us", "New plants: &US, 60 Hz, ANSI paper", "What a new plant starts with", among="units"),
     # Fault
-    _c("fault_here", Words("Commands", "&Fault here"),
-       Words("Commands", "Fault the bus or cable under the pointer, or the selected one, or the next one clicked"),
-       "F"),
-    _c("three_phase", Words("Commands", "&Three-phase"), Words("Commands", "All three phases"), "1", among="kind"),
-    _c("line_to_line", Words("Commands", "Two &phases"), Words("Commands", "Two phases, clear of earth"), "2",
-       among="kind"),
-    _c("two_lines_to_earth", Words("Commands", "Two phases to &earth"), Words("Commands", "Two phases and earth"), "3",
-       among="kind"),
-    _c("line_to_earth", Words("Commands", "&One phase to earth"), Words("Commands", "One phase and earth"), "4",
-       among="kind"),
-    _c("next_phases", Words("Commands", "&Next phases"), Words("Commands", "Let the fault join other phases"), "P"),
-    _c("largest", Words("Commands", "&Largest current"), Words("Commands", "Strongest supply, cold conductors"),
-       among="level"),
-    _c("smallest", Words("Commands", "&Smallest current"), Words("Commands", "Weakest supply, hot conductors"),
-       among="level"),
-    _c("clear_fault", Words("Commands", "&Clear the fault"),
-       Words("Commands", "Take the pin and its figures away; Escape does the same"), shown_key="Esc"),
+    _c("fault_here", "&Fault here",
+       "Fault the bus or cable under the pointer, or the selected one, or the next one clicked", "F"),
+    _c("three_phase", "&Three-phase", "All three phases", "1", among="kind"),
+    _c("line_to_line", "Two &phases", "Two phases, clear of earth", "2", among="kind"),
+    _c("two_lines_to_earth", "Two phases to &earth", "Two phases and earth", "3", among="kind"),
+    _c("line_to_earth", "&One phase to earth", "One phase and earth", "4", among="kind"),
+    _c("next_phases", "&Next phases", "Let the fault join other phases", "P"),
+    _c("largest", "&Largest current", "Strongest supply, cold conductors", among="level"),
+    _c("smallest", "&Smallest current", "Weakest supply, hot conductors", among="level"),
+    _c("clear_fault", "&Clear the fault", "Take the pin and its figures away; Escape does the same", shown_key="Esc"),
     # Sheets
-    _c("add_sheet", Words("Commands", "&Add a sheet"), Words("Commands", "Add a sheet at the end"), "Ctrl+Shift+N"),
-    _c("rename_sheet", Words("Commands", "&Rename this sheet"), Words("Commands", "Give this sheet another title")),
-    _c("remove_sheet", Words("Commands", "Re&move this sheet"),
-       Words("Commands", "Remove this sheet with everything on it; undo brings it back")),
-    _c("sheet_earlier", Words("Commands", "Move &forward"), Words("Commands", "Put this sheet before the one before")),
-    _c("sheet_later", Words("Commands", "Move &back"), Words("Commands", "Put this sheet after the next one")),
-    _c("next_sheet", Words("Commands", "&Next sheet"), Words("Commands", "Turn to the next sheet"), "Ctrl+PgDown"),
-    _c("previous_sheet", Words("Commands", "&Previous sheet"), Words("Commands", "Turn to the sheet before"),
-       "Ctrl+PgUp"),
+    _c("add_sheet", "&Add a sheet", "Add a sheet at the end", "Ctrl+Shift+N"),
+    _c("rename_sheet", "&Rename this sheet", "Give this sheet another title"),
+    _c("remove_sheet", "Re&move this sheet", "Remove this sheet with everything on it; undo brings it back"),
+    _c("sheet_earlier", "Move &forward", "Put this sheet before the one before"),
+    _c("sheet_later", "Move &back", "Put this sheet after the next one"),
+    _c("next_sheet", "&Next sheet", "Turn to the next sheet", "Ctrl+PgDown"),
+    _c("previous_sheet", "&Previous sheet", "Turn to the sheet before", "Ctrl+PgUp"),
     # Help
-    _c("show_keys", Words("Commands", "&Keys and gestures"), Words("Commands", "All keys and gestures on one page"),
-       "F1"),
-    _c("show_about", Words("Commands", "&About OneLineFault"),
-       Words("Commands", "Version, licence, and what to be careful about")),
+    _c("show_keys", "&Keys and gestures", "All keys and gestures on one page", "F1"),
+    _c("show_about", "&About OneLineFault", "Version, licence, and what to be careful about"),
 )  # fmt: skip
 BY_KEY: Final[Mapping[str, Command]] = {command.key: command for command in COMMANDS}
 
 # what stands in which menu: command keys, "-" for a line, ">name" for a submenu that the window fills
 MENUS: Final[tuple[tuple[str, tuple[str, ...]], ...]] = (
-    (Words("Commands", "&File"), (
+    ("&File", (
         "new_plant", "open_plant", ">recent", "-", "save", "save_as", "-", "page_setup", "print_preview",
         "print_sheets", "export_drawing", "export_table", "-", "close_window")),
-    (Words("Commands", "&Edit"), (
-        "undo", "redo", "-", "cut", "copy", "paste", "duplicate", "delete", "-", "select_all", "find", "rename")),
-    (Words("Commands", "&Part"), (
+    ("&Edit", (
+        "undo", "redo", "-", "cut", "copy", "paste", "duplicate", "delete", "-", "select_all", "find_part", "rename")),
+    ("&Part", (
         "place_part", "draw_wire", "-", "rotate", "mirror", "open_close", "in_out_of_service", "-", "align_left",
         "align_centre", "align_right", "align_top", "align_middle", "align_bottom", "distribute_across",
         "distribute_down", "-", "reroute", ">to_sheet")),
-    (Words("Commands", "&View"), (
+    ("&View", (
         "zoom_in", "zoom_out", "fit", "fit_selection", "-", "detail_1", "detail_2", "detail_3", "-", ">panels",
-        "drawer", "next_panel", "restore_panels", "-", "units_metric", "units_us")),
-    (Words("Commands", "F&ault"), (
+        "toggle_drawer", "next_panel", "restore_panels", "-", "units_metric", "units_us")),
+    ("F&ault", (
         "fault_here", "clear_fault", "-", "three_phase", "line_to_line", "two_lines_to_earth", "line_to_earth",
         "next_phases", "-", "largest", "smallest")),
-    (Words("Commands", "&Sheets"), (
+    ("&Sheets", (
         "add_sheet", "rename_sheet", "page_setup", "remove_sheet", "-", "sheet_earlier", "sheet_later", "-",
         "next_sheet", "previous_sheet")),
-    (Words("Commands", "&Help"), ("show_keys", "show_about")),
+    ("&Help", ("show_keys", "show_about")),
 )  # fmt: skip
 SUBMENUS: Final = {
-    ">recent": Words("Commands", "Open re&cent"),
-    ">to_sheet": Words("Commands", "To another &sheet"),
-    ">panels": Words("Commands", "&Panels"),
+    ">recent": "Open re&cent",
+    ">to_sheet": "To another &sheet",
+    ">panels": "&Panels",
 }
 
 

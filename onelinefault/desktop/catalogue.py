@@ -1,10 +1,13 @@
-"""What the shelf offers: every kind of part by trade group, with a short name and the words it is looked for by."""
+"""What the shelf offers: every kind of part by trade group, with a short name and the words it is looked for by.
+
+The words stand here in English; translators find them under the context "Catalogue".
+"""
 
 from collections.abc import Mapping
 from dataclasses import dataclass, field
 from typing import Any, Final
 
-from PySide6.QtCore import QT_TRANSLATE_NOOP, QCoreApplication
+from PySide6.QtCore import QCoreApplication
 
 _CONTEXT: Final = "Catalogue"
 
@@ -36,44 +39,44 @@ class Offer:
         return 1 if any(wanted in text for text in (*names, self.words)) else 0
 
 
-_SOURCES = QT_TRANSLATE_NOOP("Catalogue", "Sources")
-_TRANSFORMING = QT_TRANSLATE_NOOP("Catalogue", "Transforming")
-_CONDUCTORS = QT_TRANSLATE_NOOP("Catalogue", "Conductors")
-_SWITCHING = QT_TRANSLATE_NOOP("Catalogue", "Switching")
-_CONSUMERS = QT_TRANSLATE_NOOP("Catalogue", "Consumers")
-_NOTES = QT_TRANSLATE_NOOP("Catalogue", "Notes")
+_SOURCES = "Sources"
+_TRANSFORMING = "Transforming"
+_CONDUCTORS = "Conductors"
+_SWITCHING = "Switching"
+_CONSUMERS = "Consumers"
+_NOTES = "Notes"
 GROUPS: Final = (_SOURCES, _TRANSFORMING, _CONDUCTORS, _SWITCHING, _CONSUMERS, _NOTES)
 
 OFFERS: Final[tuple[Offer, ...]] = (
-    Offer(_SOURCES, "supply", QT_TRANSLATE_NOOP("Catalogue", "Supply"), "utility network feeder grid infeed"),
-    Offer(_SOURCES, "synchronous_generator", QT_TRANSLATE_NOOP("Catalogue", "Generator"), "alternator genset"),
-    Offer(_SOURCES, "converter_source", QT_TRANSLATE_NOOP("Catalogue", "Converter"), "inverter pv solar battery wind"),
-    Offer(_SOURCES, "bus", QT_TRANSLATE_NOOP("Catalogue", "Bus"), "busbar board switchboard panel mcc node"),
-    Offer(_TRANSFORMING, "transformer", QT_TRANSLATE_NOOP("Catalogue", "Transf. 2w"), "transformer two winding"),
-    Offer(_TRANSFORMING, "transformer3", QT_TRANSLATE_NOOP("Catalogue", "Transf. 3w"), "transformer three winding"),
-    Offer(_TRANSFORMING, "autotransformer", QT_TRANSLATE_NOOP("Catalogue", "Auto-transf."), "autotransformer tertiary"),
+    Offer(_SOURCES, "supply", "Supply", "utility network feeder grid infeed"),
+    Offer(_SOURCES, "synchronous_generator", "Generator", "alternator genset"),
+    Offer(_SOURCES, "converter_source", "Converter", "inverter pv solar battery wind"),
+    Offer(_SOURCES, "bus", "Bus", "busbar board switchboard panel mcc node"),
+    Offer(_TRANSFORMING, "transformer", "Transf. 2w", "transformer two winding"),
+    Offer(_TRANSFORMING, "transformer3", "Transf. 3w", "transformer three winding"),
+    Offer(_TRANSFORMING, "autotransformer", "Auto-transf.", "autotransformer tertiary"),
     Offer(
-        _TRANSFORMING, "earthing_transformer", QT_TRANSLATE_NOOP("Catalogue", "Earthing"),
+        _TRANSFORMING, "earthing_transformer", "Earthing",
         "earthing grounding transformer zigzag neutral",
     ),
-    Offer(_CONDUCTORS, "cable", QT_TRANSLATE_NOOP("Catalogue", "Cable"), "cable feeder"),
-    Offer(_CONDUCTORS, "overhead_line", QT_TRANSLATE_NOOP("Catalogue", "Overhead line"), "line conductor"),
-    Offer(_CONDUCTORS, "busway", QT_TRANSLATE_NOOP("Catalogue", "Busway"), "bus duct trunking"),
-    Offer(_CONDUCTORS, "reactor", QT_TRANSLATE_NOOP("Catalogue", "Reactor"), "reactor choke limiting"),
-    Offer(_SWITCHING, "breaker", QT_TRANSLATE_NOOP("Catalogue", "Breaker"), "circuit breaker cb tie coupler"),
-    Offer(_SWITCHING, "switch", QT_TRANSLATE_NOOP("Catalogue", "Switch"), "disconnector isolator contactor tie"),
-    Offer(_SWITCHING, "fuse", QT_TRANSLATE_NOOP("Catalogue", "Fuse"), "fuse link"),
-    Offer(_CONSUMERS, "induction_motor", QT_TRANSLATE_NOOP("Catalogue", "Motor"), "induction asynchronous motor pump"),
+    Offer(_CONDUCTORS, "cable", "Cable", "cable feeder"),
+    Offer(_CONDUCTORS, "overhead_line", "Overhead line", "line conductor"),
+    Offer(_CONDUCTORS, "busway", "Busway", "bus duct trunking"),
+    Offer(_CONDUCTORS, "reactor", "Reactor", "reactor choke limiting"),
+    Offer(_SWITCHING, "breaker", "Breaker", "circuit breaker cb tie coupler"),
+    Offer(_SWITCHING, "switch", "Switch", "disconnector isolator contactor tie"),
+    Offer(_SWITCHING, "fuse", "Fuse", "fuse link"),
+    Offer(_CONSUMERS, "induction_motor", "Motor", "induction asynchronous motor pump"),
     Offer(
-        _CONSUMERS, "induction_motor", QT_TRANSLATE_NOOP("Catalogue", "Motor group"),
+        _CONSUMERS, "induction_motor", "Motor group",
         "induction asynchronous motors group lumped", {"count": "4"},
     ),
     Offer(
-        _CONSUMERS, "synchronous_motor", QT_TRANSLATE_NOOP("Catalogue", "Sync. motor"), "synchronous motor condenser"
+        _CONSUMERS, "synchronous_motor", "Sync. motor", "synchronous motor condenser"
     ),
-    Offer(_CONSUMERS, "load", QT_TRANSLATE_NOOP("Catalogue", "Load"), "load consumer feeder spare"),
-    Offer(_CONSUMERS, "capacitor", QT_TRANSLATE_NOOP("Catalogue", "Capacitor"), "capacitor bank power factor"),
-    Offer(_NOTES, "note", QT_TRANSLATE_NOOP("Catalogue", "Note"), "text remark comment words"),
+    Offer(_CONSUMERS, "load", "Load", "load consumer feeder spare"),
+    Offer(_CONSUMERS, "capacitor", "Capacitor", "capacitor bank power factor"),
+    Offer(_NOTES, "note", "Note", "text remark comment words"),
 )  # fmt: skip
 
 

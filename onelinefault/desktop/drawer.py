@@ -5,7 +5,7 @@ from __future__ import annotations
 from typing import TYPE_CHECKING, Final
 
 from PySide6.QtCore import QItemSelection, QItemSelectionModel, QSize, Qt, Signal
-from PySide6.QtGui import QGuiApplication, QKeySequence, QShortcut
+from PySide6.QtGui import QGuiApplication, QKeySequence, QResizeEvent, QShortcut
 from PySide6.QtWidgets import (
     QAbstractItemView,
     QHBoxLayout,
@@ -44,7 +44,8 @@ class Table(QTableView):
     def __init__(self, name: str, model: TableModel) -> None:
         super().__init__()
         self.sorted = SortedTable(model)
-        self._following = False
+        self._following = self._sharing = self._dragged = False
+        self._shares: tuple[int, ...] = ()
         self.setModel(self.sorted)
         self.setAccessibleName(name)
         self.setSelectionBehavior(QAbstractItemView.SelectionBehavior.SelectRows)
@@ -59,7 +60,29 @@ class Table(QTableView):
         self.horizontalHeader().setHighlightSections(False)
         self.horizontalHeader().setStretchLastSection(True)
         self.setHorizontalScrollMode(QAbstractItemView.ScrollMode.ScrollPerPixel)
+        self.horizontalHeader().sectionResized.connect(self._column_dragged)
         self.selectionModel().selectionChanged.connect(self._selected)
+
+    def set_shares(self, widths: tuple[int, ...]) -> None:
+        """Column widths, which grow together where there is more room; what a person has dragged stays."""
+        self._shares = widths
+        self._share_out()
+
+    def resizeEvent(self, event: QResizeEvent) -> None:
+        """More or less room."""
+        super().resizeEvent(event)
+        if not self._dragged:
+            self._share_out()
+
+    def _share_out(self) -> None:
+        factor = min(max(self.viewport().width() / max(sum(self._shares), 1), 1.0), 1.7)
+        self._sharing = True
+        for column, width in enumerate(self._shares):
+            self.setColumnWidth(column, width if width < 40 else int(width * factor))
+        self._sharing = False
+
+    def _column_dragged(self, *_: int) -> None:
+        self._dragged = self._dragged or not self._sharing
 
     def follow(self, parts: frozenset[str]) -> None:
         """Select the row of what is selected on the sheet, without saying so."""
@@ -154,12 +177,9 @@ class Drawer(QStackedWidget):
         return self.tables[self.currentIndex()]
 
     def _set_columns(self) -> None:
-        for column, width in enumerate((150, 70, 92, 92, 92, 92, 110, 92, 120, 90)):
-            self.buses.setColumnWidth(column, width)
-        header = self.findings.horizontalHeader()
-        for column, width in enumerate((34, 420, 380, 120)):
-            self.findings.setColumnWidth(column, width)
-        header.setSectionResizeMode(0, QHeaderView.ResizeMode.Fixed)
+        self.buses.set_shares((130, 60, 72, 72, 82, 82, 92, 86, 88, 72))
+        self.findings.set_shares((34, 420, 380, 140))
+        self.findings.horizontalHeader().setSectionResizeMode(0, QHeaderView.ResizeMode.Fixed)
 
     def _connect(self) -> None:
         strip = self.strip
@@ -228,7 +248,9 @@ class Drawer(QStackedWidget):
     def _show_counts(self) -> None:
         for index, table in enumerate(self.tables):
             count = table.sorted.table.rowCount()
-            self.strip.tabs.setTabText(index, f"{table.accessibleName()} {count}".strip() if count else table_name(table))
+            self.strip.tabs.setTabText(
+                index, f"{table.accessibleName()} {count}".strip() if count else table_name(table)
+            )
 
     def _open_for_new_errors(self) -> None:
         """Open by itself only for an error that stands in the way of a fault that is asked for."""

@@ -52,6 +52,20 @@ def words(text: str) -> Cell:
 
 
 @dataclass(frozen=True, slots=True)
+class Head:
+    """A heading: short on the screen, full where the table is copied to, explained in a tooltip."""
+
+    short: str
+    full: str = ""
+    tip: str = ""
+
+    @property
+    def copied(self) -> str:
+        """The heading for a copy."""
+        return self.full or self.short
+
+
+@dataclass(frozen=True, slots=True)
 class TableRow:
     """One row: its cells, and the parts it speaks of."""
 
@@ -61,11 +75,22 @@ class TableRow:
     hint: str = ""
 
 
-def bus_heads(kind: FaultKind) -> tuple[str, ...]:
+def bus_heads(kind: FaultKind) -> tuple[Head, ...]:
     """The headings of the bus table; peak and X/R are of one kind of fault."""
-    kinds = tuple(f"I″ {word} kA" for word in _KIND_WORDS.values())
+    kinds = tuple(Head(f"I″ {word}", f"I″ {word} kA", _CURRENT_TIP) for word in _KIND_WORDS.values())
     word = _KIND_WORDS[kind]
-    return ("Bus", "kV", *kinds, f"peak {word} kA", f"X/R {word}", "fault level MVA", "left here %")
+    return (
+        Head("Bus"),
+        Head("kV", "nominal kV"),
+        *kinds,
+        Head(f"peak {word}", f"peak {word} kA", "Largest asymmetrical peak of the kind of fault chosen, kA"),
+        Head(f"X/R {word}", tip="Of the impedance that the current of the chosen kind of fault flows through"),
+        Head("level MVA", "fault level MVA", "Three-phase fault level: √3 · nominal voltage · I″, MVA"),
+        Head("left %", "voltage left %", "Smallest phase-to-earth voltage while the fault stands, % of nominal"),
+    )
+
+
+_CURRENT_TIP: Final = "Initial symmetrical short-circuit current of the largest phase, kA"
 
 
 def bus_rows(rows: Sequence[BusRow], result: FaultResult | None, kind: FaultKind) -> list[TableRow]:
@@ -100,7 +125,7 @@ def _left(part: str, result: FaultResult | None) -> Cell:
     return Cell(f"{percent:.0f}", percent)
 
 
-FINDING_HEADS: Final = ("", "Finding", "What to do", "Parts")
+FINDING_HEADS: Final = (Head("", "Severity"), Head("Finding"), Head("What to do"), Head("Parts"))
 
 
 def finding_rows(findings: Sequence[Finding], plant: Plant) -> list[TableRow]:
@@ -121,14 +146,14 @@ def finding_rows(findings: Sequence[Finding], plant: Plant) -> list[TableRow]:
 class TableModel(QAbstractTableModel):
     """A table of rows. mark_column: where the severity is shown as a shape instead of a word."""
 
-    def __init__(self, heads: Sequence[str], mark_column: int = -1) -> None:
+    def __init__(self, heads: Sequence[Head], mark_column: int = -1) -> None:
         super().__init__()
         self.heads = tuple(heads)
         self.rows: list[TableRow] = []
         self.stale = False
         self._mark_column = mark_column
 
-    def show_rows(self, rows: list[TableRow], heads: Sequence[str] | None = None) -> None:
+    def show_rows(self, rows: list[TableRow], heads: Sequence[Head] | None = None) -> None:
         """Show other rows; rows that only changed their figures stay where they are."""
         self.stale = False
         if heads is not None and tuple(heads) != self.heads:
@@ -165,7 +190,9 @@ class TableModel(QAbstractTableModel):
         if orientation != Qt.Orientation.Horizontal:
             return None
         if role == Qt.ItemDataRole.DisplayRole:
-            return self.heads[section]
+            return self.heads[section].short
+        if role == Qt.ItemDataRole.ToolTipRole:
+            return self.heads[section].tip or self.heads[section].copied
         if role == Qt.ItemDataRole.TextAlignmentRole:
             return int(Qt.AlignmentFlag.AlignLeft | Qt.AlignmentFlag.AlignVCenter)
         return None
@@ -219,7 +246,7 @@ class SortedTable(QSortFilterProxyModel):
 
     def as_text(self) -> str:
         """What is shown, as lines of cells parted by tabs, with headings and the caution."""
-        lines = ["\t".join(head or "Severity" for head in self.table.heads)]
+        lines = ["\t".join(head.copied for head in self.table.heads)]
         for row in range(self.rowCount()):
             source = self.mapToSource(self.index(row, 0)).row()
             lines.append("\t".join(cell.text.replace("\t", " ") for cell in self.table.rows[source].cells))

@@ -141,7 +141,9 @@ class Files(QObject):
             return False
         self._session.open(opened.plant, file)
         if opened.fingerprint != left.found.fingerprint:
-            words = self.tr("{0} was changed after the unsaved work was done, so that work no longer fits. It is kept in {1}.")
+            words = self.tr(
+                "{0} was changed after the unsaved work was done, so that work no longer fits. It is kept in {1}."
+            )
             self._tell(words.format(file.name, left.journal))
             return False
         return True

@@ -5,11 +5,12 @@ from __future__ import annotations
 from typing import TYPE_CHECKING, Final
 
 from PySide6.QtCore import QTimer, Signal
-from PySide6.QtWidgets import QLabel, QScrollArea, QStackedWidget, QVBoxLayout, QWidget
+from PySide6.QtWidgets import QHBoxLayout, QLabel, QPushButton, QScrollArea, QStackedWidget, QVBoxLayout, QWidget
 
 from onelinefault.desktop.basis_legend import BasisLegend
 from onelinefault.desktop.inspector_rows import Row, row_widget
 from onelinefault.desktop.inspector_state import RowState, document_rows, heading, part_rows, row_edit, sheet_rows
+from onelinefault.desktop.typical_values import completed_parts, fill_in, offered
 from onelinefault.errors import OneLineFaultError
 from onelinefault.model.editing import set_basis
 from onelinefault.model.fields import Basis
@@ -70,6 +71,10 @@ class Inspector(QWidget):
         self._empty.setContentsMargins(16, 8, 16, 8)
         self._stack.addWidget(self._empty)
         self.legend = BasisLegend()
+        self.fill = QPushButton()
+        self.fill.setToolTip(self.tr("Type the typical values shown in grey into their rows, marked as typical"))
+        self.fill.setStatusTip(self.fill.toolTip())
+        self.fill.clicked.connect(self.fill_typical)
         self._timer = QTimer(self)
         self._timer.setSingleShot(True)
         self._timer.timeout.connect(self.refresh)
@@ -88,6 +93,11 @@ class Inspector(QWidget):
         whole.setContentsMargins(0, 0, 0, 0)
         whole.setSpacing(0)
         whole.addWidget(scroll)
+        foot = QHBoxLayout()
+        foot.setContentsMargins(14, 4, 14, 2)
+        foot.addWidget(self.fill)
+        foot.addStretch(1)
+        whole.addLayout(foot)
         whole.addWidget(self.legend)
         self.setMinimumWidth(260)
 
@@ -108,11 +118,13 @@ class Inspector(QWidget):
     def refresh(self) -> None:
         """Show what is selected now."""
         parts = self._selected()
+        completed: list[Part] = []
         self._ids = tuple(part.id for part in parts)
         self._sheet = self._session.sheet_id
         plant = self._session.plant
         if parts:
-            words, states = heading(parts), part_rows(parts)
+            completed = completed_parts(plant, parts)
+            words, states = heading(parts), part_rows(parts, completed)
         elif self._session.selection:
             words, states = self._wire_words(), []
         else:
@@ -120,6 +132,7 @@ class Inspector(QWidget):
             words = (self.tr("Plant"), self.tr("nothing selected"))
             states = [*document_rows(plant), *(sheet_rows(sheet) if sheet else ())]
         self.titled.emit(*words)
+        self._offer_typical(parts, completed)
         self._show(states)
 
     def row(self, key: str) -> Row:
@@ -152,6 +165,15 @@ class Inspector(QWidget):
     def mark(self, row: Row, basis: str) -> None:
         """Say how a value is known."""
         self._session.apply(set_basis(self._session.plant, self._ids, row.state.key, Basis(basis)))
+
+    def fill_typical(self) -> None:
+        """Type the typical values that stand in for what is not typed, marked as typical, as one step."""
+        self._session.apply(fill_in(self._session.plant, self._selected()))
+
+    def _offer_typical(self, parts: list[Part], completed: list[Part]) -> None:
+        fields = {name for part, full in zip(parts, completed, strict=True) for name in offered(part, full)}
+        self.fill.setVisible(bool(fields))
+        self.fill.setText(self.tr("Fill in typical values ({0})").format(len(fields)))
 
     def _selected(self) -> list[Part]:
         plant = self._session.plant

@@ -19,6 +19,7 @@ from PySide6.QtWidgets import (
     QWidget,
 )
 
+from onelinefault.desktop.combo import Combo
 from onelinefault.desktop.inspector_state import NO, RATING, SUGGESTIONS, YES, RowState
 from onelinefault.drawing.painter import Painter
 from onelinefault.drawing.palette import SHEET
@@ -282,10 +283,10 @@ class LineRow(Row):
 class ChoiceRow(LineRow):
     """A row with a few words to choose from; they can be typed too."""
 
-    combo: QComboBox
+    combo: Combo
 
     def _make_editor(self) -> QWidget:
-        self.combo = _QuietCombo()
+        self.combo = Combo()
         self.line = EntryLine()
         self.combo.setEditable(True)
         self.combo.setLineEdit(self.line)
@@ -302,13 +303,6 @@ class ChoiceRow(LineRow):
         self.combo.setCurrentIndex(self.combo.findText(state.text))
         super().show_state(state)
         self.line.setAccessibleName(self.combo.accessibleName())
-
-
-class _QuietCombo(QComboBox):
-    """A combo box that the wheel does not change while one only scrolls past."""
-
-    def wheelEvent(self, event: object) -> None:
-        event.ignore()  # type: ignore[attr-defined]
 
 
 class FlagRow(Row):

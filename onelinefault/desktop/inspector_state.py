@@ -8,7 +8,6 @@ from typing import Final
 
 from onelinefault.errors import EntryError
 from onelinefault.model.consumers import Bus, Note
-from onelinefault.model.edits import Edit
 from onelinefault.model.editing import (
     rename,
     rename_sheet,
@@ -18,6 +17,7 @@ from onelinefault.model.editing import (
     set_paper,
     set_text,
 )
+from onelinefault.model.edits import Edit
 from onelinefault.model.fields import Basis, Field, fields_of, text_of
 from onelinefault.model.part import Part
 from onelinefault.model.plant import PAPER_MM, Document, Plant, Sheet

@@ -93,7 +93,7 @@ class PartItem(QGraphicsItem):
         """Paint the halo of the selection, the symbol, and the words where they can be read."""
         lod = QStyleOptionGraphicsItem.levelOfDetailFromTransform(painter.worldTransform())
         if self.chosen:
-            _paint_halo(painter, rect_of(self.picture.body, 5))
+            _paint_halo(painter, rect_of(self.picture.body, 2.5 if self.picture.symbol.kind == "bus" else 5))
         painter.translate(self.picture.x, self.picture.y)
         SPRITES.paint(painter, self.picture.symbol.shapes, lod)
         painter.translate(-self.picture.x, -self.picture.y)

@@ -5,8 +5,9 @@ from __future__ import annotations
 from typing import TYPE_CHECKING
 
 from PySide6.QtCore import Qt
-from PySide6.QtWidgets import QCheckBox, QComboBox, QDialog, QDialogButtonBox, QFormLayout, QLabel, QWidget
+from PySide6.QtWidgets import QCheckBox, QDialog, QDialogButtonBox, QFormLayout, QLabel, QWidget
 
+from onelinefault.desktop.combo import Combo
 from onelinefault.desktop.settings import FITTED, OWN_PAPER, TRUE_SCALE
 from onelinefault.model.editing import in_turn, set_paper
 from onelinefault.model.plant import PAPER_MM
@@ -58,11 +59,12 @@ class PageSetup(QDialog):
         buttons.accepted.connect(self.accept)
         buttons.rejected.connect(self.reject)
         form.addRow(buttons)
-        for widget, name in ((self.paper, "Paper"), (self.printer, "Print on"), (self.scale, "Scale")):
+        names = (self.tr("Paper"), self.tr("Print on"), self.tr("Scale"))
+        for widget, name in zip((self.paper, self.printer, self.scale), names, strict=True):
             widget.setAccessibleName(name)
 
-    def _combo(self, choices: list[tuple[str, str]], chosen: str) -> QComboBox:
-        combo = QComboBox()
+    def _combo(self, choices: list[tuple[str, str]], chosen: str) -> Combo:
+        combo = Combo()
         for key, words in choices:
             combo.addItem(words, key)
         combo.setCurrentIndex(max(combo.findData(chosen), 0))

@@ -211,7 +211,7 @@ def set_paper(printer: QPrinter, size_mm: tuple[float, float]) -> None:
 
 
 def page_parts(sheet_mm: tuple[float, float], paper_mm: tuple[float, float], true_scale: bool) -> list[QRectF]:
-    """The pieces of a sheet (mm) that go on a page each: the whole sheet, or tiles of the paper's size at true scale."""
+    """The pieces of a sheet (mm) that go on a page each: the whole sheet, or tiles of the paper at true scale."""
     width, height = sheet_mm
     fits = width <= paper_mm[0] + _SAME_MM and height <= paper_mm[1] + _SAME_MM
     if not true_scale or fits:

@@ -28,7 +28,7 @@ from onelinefault.drawing.symbols import Look, symbol
 TILE: Final = QSize(64, 66)
 _SCALE: Final = 0.72
 _PICTURE: Final = QRectF(4, 5, 56, 43)
-_NOTHING_FITS: Final = 0
+_NAME_PT: Final = (7.1, 6.7, 6.3)  # a long name is set smaller before it is cut
 
 
 def offer_shapes(offer: Offer) -> Shapes:
@@ -129,10 +129,15 @@ class PartTile(QAbstractButton):
         painter.drawRoundedRect(QRectF(self.rect()).adjusted(inset, inset, -inset, -inset), 7, 7)
         paint_offer(painter, self.offer, palette, _PICTURE)
         painter.setPen(palette.windowText().color())
-        font = self.font()
-        font.setPointSizeF(7.1)
-        painter.setFont(font)
-        room = self.rect().adjusted(1, 48, -1, -3)
+        self._paint_name(painter)
+
+    def _paint_name(self, painter: QPainter) -> None:
+        font, room = self.font(), self.rect().adjusted(2, 48, -2, -3)
+        for points in _NAME_PT:
+            font.setPointSizeF(points)
+            painter.setFont(font)
+            if painter.fontMetrics().horizontalAdvance(self.text()) <= room.width():
+                break
         name = painter.fontMetrics().elidedText(self.text(), Qt.TextElideMode.ElideRight, room.width())
         painter.drawText(room, Qt.AlignmentFlag.AlignHCenter | Qt.AlignmentFlag.AlignVCenter, name)
 
@@ -199,7 +204,7 @@ class Shelf(QWidget):
             holder.show_tiles([t for t in self.tiles if t.offer.group == group and t.offer in fitting])
         for tile in self.tiles:
             tile.setVisible(tile.offer in fitting)
-        self._nothing.setVisible(len(fitting) == _NOTHING_FITS)
+        self._nothing.setVisible(not fitting)
 
     def _place_first(self) -> None:
         fitting = found(self.search.text())

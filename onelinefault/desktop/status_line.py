@@ -15,7 +15,9 @@ if TYPE_CHECKING:
     from onelinefault.desktop.session import Session
     from onelinefault.desktop.solver import Solver
 
-_AT_FIRST = "Drag a part from the shelf, or press A and type its name. Click a bus to fault it; keys 1–4 choose the kind."
+_AT_FIRST = (
+    "Drag a part from the shelf, or press A and type its name. Click a bus to fault it; keys 1–4 choose the kind."
+)
 
 
 class StatusLine(QStatusBar):
@@ -46,7 +48,9 @@ class StatusLine(QStatusBar):
 
     def refresh(self, *_: object) -> None:
         """How the figures came about."""
-        base = text_of(self._session.plant.document.base_power or quantity(self._session.plant.document.base_mva, "MVA"))
+        base = text_of(
+            self._session.plant.document.base_power or quantity(self._session.plant.document.base_mva, "MVA")
+        )
         caution = self.tr("calculated prospective values, for checking by a qualified engineer")
         self.solved.setText(" · ".join((*self._state(), self.tr("base {0}").format(base), caution)))
 

@@ -132,6 +132,7 @@ QLineEdit, QComboBox, QSpinBox { background: @field; color: @ink; border: 1px so
 QLineEdit:focus, QComboBox:focus, QSpinBox:focus { border: 2px solid @focus; padding: 1px 6px; }
 QLineEdit[fault="true"], QComboBox[fault="true"] { border: 2px solid @trouble; padding: 1px 6px; }
 QComboBox { padding-right: 18px; }
+QComboBox QLineEdit, QComboBox QLineEdit:focus { border: none; padding: 0; background: transparent; min-height: 0; }
 QComboBox::drop-down { border: none; width: 18px; }
 QComboBox::down-arrow { image: none; width: 0; height: 0; }
 QComboBox QAbstractItemView { background: @field; color: @ink; border: 1px solid @line;
@@ -147,7 +148,8 @@ QPushButton:focus, QToolButton[part="segment"]:focus, QToolButton[part="plain"]:
     border: 2px solid @focus; padding: 2px 8px; }
 QToolButton[tight="true"] { padding: 3px 5px; }
 QToolButton[tight="true"]:focus { padding: 2px 4px; }
-QToolButton[part="quiet"] { background: transparent; border: 2px solid transparent; border-radius: 4px; color: @muted; }
+QToolButton[part="quiet"] { background: transparent; color: @muted; font-size: @size_heading; padding: 0 3px;
+    border: 2px solid transparent; border-radius: 4px; }
 QToolButton[part="quiet"]:hover { background: @hover; color: @ink; }
 QToolButton[part="quiet"]:focus { border-color: @focus; }
 QCheckBox { color: @ink; font-size: @size_row; spacing: 7px; }
@@ -170,7 +172,7 @@ QTableView { background: @panel; color: @ink; border: none; gridline-color: tran
 QTableView::item { padding: 0 6px; border: none; }
 QTableView:focus { border: 1px solid @focus; }
 QHeaderView { background: @panel; }
-QHeaderView::section { background: @panel; color: @muted; border: none; padding: 3px 6px; font-size: @size_small;
+QHeaderView::section { background: @panel; color: @muted; border: none; padding: 3px 9px; font-size: @size_small;
     font-weight: bold; }
 QTableCornerButton::section { background: @panel; border: none; }
 QFrame[part="rule"] { background: @line; border: none; max-height: 1px; min-height: 1px; }

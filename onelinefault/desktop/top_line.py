@@ -5,9 +5,11 @@ from __future__ import annotations
 from typing import TYPE_CHECKING, Final
 
 from PySide6.QtCore import QPointF, QSize, Qt, Signal
-from PySide6.QtGui import QFontMetrics, QKeyEvent, QMouseEvent, QPainter, QPen, QResizeEvent
+from PySide6.QtGui import QKeyEvent, QMouseEvent, QPainter, QPen, QResizeEvent
 from PySide6.QtWidgets import QComboBox, QHBoxLayout, QLabel, QSizePolicy, QToolButton, QWidget
 
+from onelinefault.desktop.combo import Combo
+from onelinefault.desktop.elided import ElidedLabel
 from onelinefault.desktop.segments import Segments
 from onelinefault.model.fault import PHASE_CHOICES, FaultKind
 
@@ -18,29 +20,6 @@ if TYPE_CHECKING:
 
 HEIGHT: Final = 44
 _AS_DRAWN: Final = ""
-
-
-class PlantName(QLabel):
-    """The plant's name, cut short where there is no room."""
-
-    def __init__(self) -> None:
-        super().__init__()
-        self._full = ""
-        self.room = 180
-        self.setProperty("part", "heading")
-
-    def show_name(self, name: str) -> None:
-        """Show another name."""
-        self._full = name
-        self.ensurePolished()
-        self.setToolTip(name)
-        self.setText(QFontMetrics(self.font()).elidedText(name, Qt.TextElideMode.ElideRight, self.room))
-
-    def set_room(self, room: int) -> None:
-        """Take at most so many pixels."""
-        if room != self.room:
-            self.room = room
-            self.show_name(self._full)
 
 
 class DetailDots(QWidget):
@@ -101,12 +80,12 @@ class TopLine(QWidget):
     def __init__(self, session: Session, undo: QAction, redo: QAction, printing: QAction) -> None:
         super().__init__()
         self._session = session
-        self.name, self.edited = PlantName(), _muted(self.tr("· edited"))
+        self.name, self.edited = ElidedLabel(), _muted(self.tr("· edited"))
         self.method = Segments(self.tr("Method"), [("classical", self.tr("classical"), _METHOD_TIP)])
         self.kind = Segments(self.tr("Kind of fault"), self._kinds())
         self.phases = Segments(self.tr("Phases"), [])
         self.level = Segments(self.tr("Level"), self._levels())
-        self.arrangement = QComboBox()
+        self.arrangement = Combo()
         self.detail = DetailDots()
         words = (self.tr("Method"), self.tr("Fault"), self.tr("Arrangement"), self.tr("Detail"))
         self._labels = [_muted(word) for word in words]
@@ -137,6 +116,7 @@ class TopLine(QWidget):
         self.arrangement.setToolTip(self.tr("Which switches are closed and which parts run"))
         self.arrangement.setSizeAdjustPolicy(QComboBox.SizeAdjustPolicy.AdjustToMinimumContentsLengthWithIcon)
         self.arrangement.setFocusPolicy(Qt.FocusPolicy.StrongFocus)
+        self.name.setProperty("part", "heading")
         self.method.show_choice("classical")
         self.setSizePolicy(QSizePolicy.Policy.Expanding, QSizePolicy.Policy.Fixed)
         self.setFixedHeight(HEIGHT)
@@ -178,7 +158,7 @@ class TopLine(QWidget):
     def show_file(self, *_: object) -> None:
         """Name of the plant, whether it is edited, and its arrangements."""
         plant = self._session.plant
-        self.name.show_name(plant.document.name or self.tr("New plant"))
+        self.name.setText(plant.document.name or self.tr("New plant"))
         self.edited.setVisible(self._session.edited)
         known = [(_AS_DRAWN, self.tr("as drawn")), *((a.id, a.name) for a in plant.arrangements)]
         shown = [(self.arrangement.itemData(i), self.arrangement.itemText(i)) for i in range(self.arrangement.count())]

@@ -21,6 +21,7 @@ class TypeAhead(QFrame):
 
     def __init__(self, over: QWidget) -> None:
         super().__init__(over)
+        self._over = over
         self._offers: list[Offer] = []
         self.setProperty("part", "popup")
         self.line = _Line(self)
@@ -46,9 +47,8 @@ class TypeAhead(QFrame):
         self.line.clear()
         self._fill("")
         self.adjustSize()
-        parent = self.parentWidget()
-        x = min(max(at.x(), 4), parent.width() - self.width() - 4)
-        y = min(max(at.y(), 4), parent.height() - self.height() - 4)
+        x = min(max(at.x(), 4), self._over.width() - self.width() - 4)
+        y = min(max(at.y(), 4), self._over.height() - self.height() - 4)
         self.move(x, y)
         self.show()
         self.raise_()

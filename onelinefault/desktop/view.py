@@ -35,6 +35,8 @@ class SheetView(QGraphicsView):
         self.setTransformationAnchor(QGraphicsView.ViewportAnchor.NoAnchor)
         self.setResizeAnchor(QGraphicsView.ViewportAnchor.AnchorViewCenter)
         self.setViewportUpdateMode(QGraphicsView.ViewportUpdateMode.SmartViewportUpdate)
+        for policy in (self.setHorizontalScrollBarPolicy, self.setVerticalScrollBarPolicy):
+            policy(Qt.ScrollBarPolicy.ScrollBarAlwaysOff)  # the wheel, the space bar and the middle button move the sheet
         self.setFrameShape(QGraphicsView.Shape.NoFrame)
         self.setMouseTracking(True)
         self.viewport().setMouseTracking(True)

@@ -8,7 +8,6 @@ from typing import TYPE_CHECKING, Final
 from PySide6.QtCore import Qt, Signal
 from PySide6.QtWidgets import QGridLayout, QLabel, QScrollArea, QVBoxLayout, QWidget
 
-from onelinefault.model.caution import CAUTION_SHORT
 from onelinefault.model.figures import angle_text, current_text, figure, voltage_text
 
 if TYPE_CHECKING:
@@ -127,24 +126,31 @@ class WorkingPanel(QWidget):
         trouble = answer.trouble if answer is not None and not self._solver.stale else ""
         if result is None:
             self._show([], False)
-            self.note.setText(trouble or self._invitation())
+            self._say(trouble or self._invitation())
             self.titled.emit(self.tr("Working"), "")
             return
         from onelinefault.report.overlay_data import fault_words  # noqa: PLC0415 - loads numpy; it is loaded by now
 
         self.titled.emit(self.tr("Working"), fault_words(session.plant, result))
         self._show(fault_lines(session.plant, result), self._solver.stale)
-        self.note.setText(self._rests_on(result) if not self._solver.stale else self.tr("Computing anew …"))
+        if self._solver.stale:
+            self._say(self.tr("Computing anew …"))
+        else:
+            self._say_what_it_rests_on(result)
 
     def _invitation(self) -> str:
         if self._session.fault is not None:
             return self.tr("Computing …")
         return self.tr("Click a bus to fault it; the figures appear here.")
 
-    def _rests_on(self, result: FaultResult) -> str:
-        rests = [finding.message for finding in result.findings]
-        words = self.tr("Rests on typical or guessed data: {0}").format("; ".join(rests)) if rests else ""
-        return " ".join(filter(None, (words, CAUTION_SHORT)))
+    def _say(self, words: str, tip: str = "") -> None:
+        self.note.setText(words)
+        self.note.setToolTip(tip)
+        self.note.setVisible(bool(words))
+
+    def _say_what_it_rests_on(self, result: FaultResult) -> None:
+        rests = "\n".join(finding.message for finding in result.findings)
+        self._say(self.tr("△ rests on typical or guessed data") if rests else "", rests)
 
     def _show(self, lines: list[Line], stale: bool) -> None:
         if lines == self._shown and stale == self._stale:

@@ -22,5 +22,5 @@ def direct_share(x_over_r: float, cycles: float) -> float:
 
 
 def asymmetrical_rms_ka(symmetrical_ka: float, x_over_r: float, cycles: float) -> float:
-    """R.m.s. current in kA after this many cycles, direct part at its largest; √3 times the symmetrical one at first."""
+    """R.m.s. current in kA after this many cycles, direct part at its largest: at first √3 times symmetrical."""
     return symmetrical_ka * math.sqrt(1 + 2 * direct_share(x_over_r, cycles) ** 2)

@@ -90,7 +90,7 @@ class _Rows:
         except PartLeftOutError as error:
             self.findings.append(error.finding)
             return
-        except (EntryError, ZeroDivisionError, OverflowError) as error:
+        except (EntryError, ArithmeticError, ValueError) as error:
             remedy = f"Check the ratings of {part.title}."
             self.findings.append(left_out(part, "bad-rating", f"{error}", remedy).finding)
             return

@@ -6,6 +6,7 @@ from onelinefault.engine.sequence_machines import induction_mva, running_count, 
 from onelinefault.engine.sequence_stamps import PartLeftOutError
 from onelinefault.engine.topology import Topology
 from onelinefault.engine.voltages import WINDINGS, volts
+from onelinefault.errors import EntryError
 from onelinefault.model.figures import figure
 from onelinefault.model.findings import Finding, Severity
 from onelinefault.model.part import Part
@@ -49,7 +50,7 @@ def _motor_mva(part: InductionMotor | SynchronousMotor) -> float:
         if isinstance(part, InductionMotor):
             return induction_mva(part) * running_count(part)
         return synchronous_mva(part)
-    except (PartLeftOutError, ZeroDivisionError):
+    except (PartLeftOutError, EntryError, ArithmeticError):
         return 0.0
 
 

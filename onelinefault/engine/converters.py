@@ -10,8 +10,9 @@ because a converter cannot follow the angle of a voltage that vanishes: it keeps
 and figures are common practice (reactive-current support of grid codes), not a standard's.
 
 The rest of the plant is linear: with Thévenin's voltage and impedances at the fault, each converter's voltage is an
-affine function of all currents J. So only J is iterated on: fixed point, damped by each converter's own loop gain, at
-most 50 rounds. Currents are per unit; k faults at once, c converters.
+affine function of all currents J. So only J is iterated on, at most 50 rounds: fixed point, each step damped by the
+converters' own loop gain and corrected by what the last two rounds taught. Currents are per unit; k faults at once, c
+converters.
 """
 
 from dataclasses import dataclass
@@ -29,8 +30,8 @@ FULL_CURRENT_DIP = 0.1
 MEMORY_BELOW = 0.5
 """Voltage left below which the angle held from before the fault takes over (common practice)."""
 
-DEPTH=4
 ROUNDS = 50
+ROUNDS_REMEMBERED = 2
 SETTLED = 1e-9
 """A converter has settled when its current asks for a change of less than this share of its limit."""
 
@@ -119,24 +120,29 @@ def settle(
             if settled.all():
                 break
             step = group.damping(voltage, before, gain) * asked
-            past = [*past[-DEPTH:], (fed, step)]
+            past = [*past[-ROUNDS_REMEMBERED:], (fed, step)]
             fed = fed + step - _learned(past)
     total = (emf + (to_converters * fed).sum(axis=1))[:, None]
     return Fed(unit_current * total, unit_voltage * total, fed, settled)
 
 
 def _learned(past: list[tuple[ComplexArray, ComplexArray]]) -> ComplexArray:
-    """Anderson"""
-    (fed, step), older = past[-1], past[:-1]
-    if not older:
+    """What the last rounds say the next step does too much, shape (k, c); past: (currents, step) of each round.
+
+    The steps seen are taken as linear in the currents; the combination of earlier rounds that cancels most of the last
+    step is what is mixed in. Source: Anderson, "Iterative procedures for nonlinear integral equations", 1965.
+    """
+    (fed, step), earlier = past[-1], past[:-1]
+    if not earlier:
         return np.zeros_like(fed)
-    dF = np.stack([step - s for _, s in older], -1)  # k,c,m
-    dX = np.stack([fed - f for f, _ in older], -1)
-    G = np.einsum("kcm,kcn->kmn", dF.conj(), dF).real
-    h = np.einsum("kcm,kc->km", dF.conj(), step).real
-    G += 1e-14*np.trace(G,axis1=1,axis2=2)[:,None,None]*np.eye(len(older)) + 1e-300*np.eye(len(older))
-    th = np.linalg.solve(G, h[...,None])[...,0]
-    return np.einsum("kcm,km->kc", dX + dF, th)
+    of_steps = np.stack([step - other for _, other in earlier], axis=-1)
+    of_currents = np.stack([fed - other for other, _ in earlier], axis=-1)
+    gram = np.einsum("kcm,kcn->kmn", of_steps.conj(), of_steps).real
+    spread = 1e-14 * np.trace(gram, axis1=1, axis2=2) + np.finfo(float).tiny  # keeps it regular when nothing moves
+    gram += spread[:, None, None] * np.eye(len(earlier))
+    weight = np.linalg.solve(gram, np.einsum("kcm,kc->km", of_steps.conj(), step).real[..., None])
+    mixed: ComplexArray = ((of_currents + of_steps) @ weight)[..., 0]
+    return mixed
 
 
 def _gain(weight: FloatArray, between: ComplexArray, pull: ComplexArray, to_converters: ComplexArray) -> FloatArray:

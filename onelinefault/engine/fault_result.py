@@ -89,7 +89,9 @@ class Translator:
         network, scales, node = self.equations.network, self.scales, site.node
         reference = self._reference(spot)
         elements = self._element_currents(spot, solution, split)
-        z = np.where(self.equations.tied[node], spot.z, np.inf)
+        z = spot.z.copy()
+        if not self.equations.tied[node, POSITIVE]:
+            z[POSITIVE] = np.inf  # fed by converters alone
         through = impedance_through(boundary, z[None])
         sequence_ka = solution.current * scales.turned_ka[node] * reference
         phases = to_phases(sequence_ka)

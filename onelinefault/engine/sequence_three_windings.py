@@ -22,12 +22,14 @@ from onelinefault.engine.sequence_stamps import (
     with_x_over_r,
 )
 from onelinefault.engine.sequence_transformers import DEGREES_PER_HOUR, Winding, clock_sign
+from onelinefault.model.part import Part
 from onelinefault.model.transforming import Autotransformer, Transformer3
 
 _HIGH, _MIDDLE, _LOW = 0, 1, 2
 _PAIRS = ((_HIGH, _MIDDLE), (_HIGH, _LOW), (_MIDDLE, _LOW))
 AUTO_SIDES = ("high", "low", "tertiary")
 SIDES = ("high", "medium", "low")
+THIN = 1e-7  # of the largest leg: as good as nothing, and the equations can still be solved to as many digits
 COMMON = "common"  # the star point that both sides of an autotransformer share
 
 Legs = tuple[complex, complex, complex]
@@ -49,6 +51,14 @@ def star_legs(pairs: Legs) -> Legs:
     return (z12 + z13 - z23) / 2, (z12 + z23 - z13) / 2, (z13 + z23 - z12) / 2
 
 
+def _without_shorts(part: Part, legs: Legs) -> Legs:
+    """A leg that vanishes (10 %, 16 %, 6 %: the middle one does) becomes ``THIN`` of the largest, so that it has a 1/z."""
+    largest = max(abs(z) for z in legs)
+    admittance(part, largest)
+    z_high, z_middle, z_low = (z if abs(z) > THIN * largest else THIN * largest * 1j for z in legs)
+    return z_high, z_middle, z_low
+
+
 def transformer3_stamps(part: Transformer3, node_kv: tuple[float, float, float], setting: Setting) -> Stamps:
     """Three legs from the pair impedances, each on its own base; in the zero sequence each by its own connection.
 
@@ -62,7 +72,7 @@ def transformer3_stamps(part: Transformer3, node_kv: tuple[float, float, float],
         earthing = earthing_ohm(part, f"neutral_{side}", rated_kv, group.brought_out[k])
         turns_kv = rated_kv * (tap if k == _HIGH else 1.0)
         windings.append(Winding(side, group.connections[k], turns_kv, node_kv[k], earthing))
-    legs = star_legs(_pairs3(part, setting.base_mva))
+    legs = _without_shorts(part, star_legs(_pairs3(part, setting.base_mva)))
     share = in_unit(part, "zero_sequence_impedance", "pu")
     clocks = (0, *group.clocks)
     zero = [
@@ -165,7 +175,7 @@ def autotransformer_stamps(part: Autotransformer, node_kv: tuple[float, float, f
         Winding(side, "Y" if k < _LOW else group.connections[_LOW], u * (1.0, tap)[k == _HIGH], v, None)
         for k, (side, u, v) in enumerate(zip(AUTO_SIDES, rated, node_kv, strict=True))
     ]
-    legs = star_legs(_pairs_auto(part, setting.base_mva))
+    legs = _without_shorts(part, star_legs(_pairs_auto(part, setting.base_mva)))
     share = in_unit(part, "zero_sequence_impedance", "pu")
     z0 = (legs[0] * share, legs[1] * share, legs[2] * share)
     if earthing is None:
@@ -196,7 +206,9 @@ def _auto_earthed(part: Autotransformer, windings: list[Winding], z0: Legs, eart
     """Legs of the derivation above; earth: 3 Zn in per unit at the low side's rated voltage."""
     high, low, tertiary = windings
     a = high.turns_kv / low.turns_kv
-    z_high, z_low = z0[_HIGH] - earth * (a - 1) / a**2, z0[_MIDDLE] + earth * (a - 1) / a
+    z_high, z_low, _ = _without_shorts(
+        part, (z0[_HIGH] - earth * (a - 1) / a**2, z0[_MIDDLE] + earth * (a - 1) / a, z0[_LOW] + earth / a)
+    )
     legs = [
         _ZeroLeg(series=admittance(part, z_high), ratio=_rated_ratio(high)),
         _ZeroLeg(series=admittance(part, z_low), ratio=_rated_ratio(low)),

@@ -2,10 +2,11 @@
 
 from collections.abc import Iterator
 from dataclasses import replace
+from functools import lru_cache
 from typing import Any
 
 from onelinefault.model.completion_rules import ASSUMED_DEFAULTS, FILLERS, Fill, Setting
-from onelinefault.model.fields import Basis, Field, fields_of, text_of
+from onelinefault.model.fields import Basis, Field, Value, fields_of, text_of
 from onelinefault.model.findings import Finding, Severity
 from onelinefault.model.part import Part
 from onelinefault.model.plant import Plant
@@ -61,16 +62,22 @@ def _remembered(part: Part, setting: Setting) -> _Completed:
 
 
 def _filled(part: Part, fills: list[Fill]) -> Part:
-    fields = fields_of(type(part))
-    changes: dict[str, Any] = {fill.field: fields[fill.field].value_from(fill.text) for fill in fills}
+    kind: type = type(part)
+    changes: dict[str, Any] = {fill.field: _value(kind, fill.field, fill.text) for fill in fills}
     basis = {**part.basis, **{fill.field: Basis.TYPICAL for fill in fills}}
     return replace(part, **changes, basis=basis)
 
 
+@lru_cache(maxsize=4096)
+def _value(kind: type, name: str, text: str) -> Value | None:
+    return fields_of(kind)[name].value_from(text)
+
+
 def _of_fills(part: Part, fills: list[Fill]) -> Iterator[Finding]:
+    fields = fields_of(type(part))
     for fill in fills:
         if not fill.quiet:
-            label = fields_of(type(part))[fill.field].label
+            label = fields[fill.field].label
             text = f"{part.title}: {label} {fill.text} assumed, typical for {fill.reason} ({fill.source})"
             yield _hint(part, fill.field, TYPICAL, text, "Enter the maker's value.")
 

@@ -148,18 +148,28 @@ def _flow_tags(plant: Plant, result: FaultResult, detail: int) -> list[Tag]:
 
 
 def _feeders(plant: Plant, result: FaultResult) -> list[tuple[tuple[str, str], int, ComplexArray]]:
-    """Terminals where parts feed the faulted node, and those of sources elsewhere, with node and current."""
-    found = []
+    """Terminals where parts feed the faulted node, and those of sources elsewhere, with node and current.
+
+    A source whose current arrives unchanged at the faulted node, along one line, is shown there only.
+    """
+    found, arriving = [], set[tuple[float, float]]()
     node_of = result.network.node_of
     sources = {share.part for share in result.sources}
     for key, ka in result.terminal_ka.items():
         part, node = plant.parts.get(key[0]), node_of.get(key)
         if part is None or node is None or hasattr(part, "closed") or part.kind == "bus":
             continue
-        strong = float(max(abs(ka))) > max(_LEAST_SHARE * result.ik_ka, 1e-5)
-        if strong and (node == result.node or part.id in sources):
+        size = float(max(abs(ka)))
+        if size > max(_LEAST_SHARE * result.ik_ka, 1e-5) and (node == result.node or part.id in sources):
             found.append((key, node, ka))
-    return found
+            if node == result.node:
+                arriving.add(_mark(size, node, result))
+    return [(k, n, ka) for k, n, ka in found if n == result.node or _mark(max(abs(ka)), n, result) not in arriving]
+
+
+def _mark(size_ka: float, node: int, result: FaultResult) -> tuple[float, float]:
+    """Size and voltage level of a current, to five digits."""
+    return float(f"{size_ka:.4e}"), result.network.nodes[node].nominal_kv
 
 
 def strongest_phase(phases_ka: ComplexArray) -> int:

@@ -41,7 +41,7 @@ def test_engine_docstrings_give_shapes(path: Path) -> None:
         annotations += ast.unparse(function.returns) if function.returns else ""
         if re.search(r"(Complex|Float|Int|Bool)Array|NDArray", annotations):
             text = ast.get_docstring(function) or ""
-            assert re.search(r"\([\w\s+·*,…-]*,[\w\s,]*\)|shape|same as", text), (
+            assert re.search(r"\([\w\s+·*,….-]*,[\w\s,]*\)|shape|same as", text), (
                 f"{path.name}: {function.name} names no shape"
             )
 

@@ -20,7 +20,7 @@ MAY_IMPORT = {
     "report": {"model", "engine", "drawing", "studies", "errors"},
     "scripting": {"model", "engine", "store", "studies", "errors"},
     "desktop": {"model", "engine", "store", "drawing", "report", "studies", "errors"},
-    "cli": {"model", "engine", "store", "drawing", "report", "studies", "scripting", "desktop", "errors"},
+    "cli": {"model", "engine", "store", "drawing", "report", "studies", "scripting", "desktop", "errors", "__init__"},
     "__main__": {"cli"},
     "__init__": {"scripting", "studies", "store", "model", "engine", "errors"},
 }
@@ -48,7 +48,7 @@ def dotted(path: Path) -> str:
 
 def layer_of(name: str) -> str:
     parts = name.split(".")
-    return parts[1] if len(parts) > 1 else "__init__"
+    return parts[1] if len(parts) > 1 and not parts[1].startswith("__v") else "__init__"
 
 
 def imports_of(path: Path, load_time_only: bool = False) -> list[str]:

@@ -73,7 +73,8 @@ RESISTOR_OHM = (3.0, 1.0, 0.2)
 
 
 @pytest.mark.parametrize(
-    "group", ["YNyn0d11", "YNyn6d1", "YNyn8yn2", "YNyn0yn0", "Yyn10d5", "YNy0d7", "Dyn11yn5", "Dyn1yn3", "YNd1d11", "Dd0d0"]
+    "group",
+    ["YNyn0d11", "YNyn6d1", "YNyn8yn2", "YNyn0yn0", "Yyn10d5", "YNy0d7", "Dyn11yn5", "Dyn1yn3", "YNd1d11", "Dd0d0"],
 )  # fmt: skip
 def test_three_windings_are_what_their_coils_are(group: str) -> None:
     part = made(Transformer3, {"vector_group": group})
@@ -128,7 +129,7 @@ AUTO_NODE_KV = (220.0, 115.0, 10.5)
 
 
 def auto_coils(tap: float, legs_ohm: Sequence[complex], tertiary: str, roll: int = 0, flip: int = 1) -> list[Coil]:
-    """Series coils between H and X, common coils from X to the neutral, a tertiary; leakage of series, common, tertiary."""
+    """Series coils between H and X, common ones from X to the neutral, a tertiary; leakage in that order."""
     high, low, third = AUTO_KV
     coils: list[Coil] = []
     for k in range(3):
@@ -199,6 +200,16 @@ def test_pair_base_is_the_smaller_rating_when_not_given() -> None:
     assert abs(z_high + z_medium) == pytest.approx(0.10 * 100 / 60)
     assert abs(z_high + z_low) == pytest.approx(0.12 * 100 / 20)
     assert abs(z_medium + z_low) == pytest.approx(0.06 * 100 / 20)
+
+
+def test_a_leg_that_vanishes_is_no_mistake() -> None:
+    # pairs of 10, 16 and 6 % on one base: nothing is left for the medium leg
+    ratings = {f"{side}_voltage": "33 kV" for side in SIDES} | {"rated_power_high": "100 MVA"}
+    ratings |= {"impedance_high_medium": "10 %", "impedance_high_low": "16 %", "impedance_medium_low": "6 %"}
+    branches = transformer3_stamps(made(Transformer3, ratings), (33, 33, 33), SETTING).branches  # type: ignore[arg-type]
+    z_high, z_medium, z_low = (1 / b.y[0] for b in branches)
+    assert abs(z_medium) < 1e-7
+    assert (abs(z_high), abs(z_low)) == pytest.approx((0.10, 0.06), rel=1e-6)
 
 
 def test_group_of_two_windings_is_refused_by_name() -> None:

@@ -159,7 +159,7 @@ def test_load_loss_above_the_impedance_is_refused_by_name() -> None:
     made = part(
         Transformer, rated_power="1 MVA", high_voltage="11 kV", low_voltage="0.4 kV", impedance="5 %", load_loss="60 kW"
     )
-    with pytest.raises(PartLeftOutError, match="transformer T1.*60 kW"):
+    with pytest.raises(PartLeftOutError, match=r"transformer T1.*60 kW"):
         transformer_stamps(made, 11.0, 0.4, SETTING)
 
 

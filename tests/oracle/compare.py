@@ -10,28 +10,31 @@ from tests.oracle.phase_domain import Answer
 
 TOLERANCE = 1e-8  # of the largest of its kind; the oracle's dense solve over five voltage levels is good to about 1e-10
 TerminalKey = tuple[str, str]
+Gap = tuple[float, str]
 
 
-def disagreements(result: FaultResult, answer: Answer) -> list[str]:
+def disagreements(result: FaultResult, answer: Answer, tolerance: float = TOLERANCE) -> list[str]:
     """One line for each quantity that differs by more than the tolerance."""
-    return [*_currents(result, answer), *_voltages(result, answer)]
+    gaps = [*current_gaps(result, answer), *_voltage_gaps(result, answer)]
+    return [sentence for gap, sentence in gaps if not gap <= tolerance]
 
 
-def _currents(result: FaultResult, answer: Answer) -> Iterator[str]:
+def current_gaps(result: FaultResult, answer: Answer) -> Iterator[Gap]:
+    """Every current: how far apart the two are, against the largest, and the sentence that says so."""
     kv = {key: float(abs(volts).max()) for key, volts in answer.before_kv.items()}
     at_fault = _scale_ka(result, answer, kv)
-    yield from _differ("fault current", result.phases_ka, answer.fault_ka, at_fault)
-    yield from _differ("residual current", result.residual_ka, answer.fault_ka.sum(), at_fault)
+    yield from _gap("fault current", result.phases_ka, answer.fault_ka, at_fault)
+    yield from _gap("residual current", result.residual_ka, answer.fault_ka.sum(), at_fault)
     power = at_fault * result.prefault_kv / np.sqrt(3)
     for key, ampere in answer.terminal_ka.items():
-        yield from _differ(f"current at {key}", result.terminal_ka[key], ampere, power / kv[key])
+        yield from _gap(f"current at {key}", result.terminal_ka[key], ampere, power / kv[key])
     for (part, side), into_earth in answer.earth_ka.items():
         terminal = next(k for k in answer.terminal_ka if k[0] == part and side in (k[1], "common"))
         ours = result.neutral_ka[part, side]
-        yield from _differ(f"neutral current {part, side}", ours, into_earth, power / kv[terminal])
+        yield from _gap(f"neutral current {part, side}", ours, into_earth, power / kv[terminal])
     for key in result.terminal_ka.keys() & answer.before_kv.keys() - answer.terminal_ka.keys():
         if key[0] in result.network.branch_parts or key[0] in result.network.shunt_parts:
-            yield f"the engine has a current at {key}, the oracle has not"
+            yield np.inf, f"the engine has a current at {key}, the oracle has not"
 
 
 def _scale_ka(result: FaultResult, answer: Answer, kv: Mapping[TerminalKey, float]) -> float:
@@ -43,19 +46,19 @@ def _scale_ka(result: FaultResult, answer: Answer, kv: Mapping[TerminalKey, floa
     return max(float(abs(answer.fault_ka).max()), *shares, 1e-2 * volts / abs(z1))
 
 
-def _voltages(result: FaultResult, answer: Answer) -> Iterator[str]:
-    yield from _differ("voltage at the fault", result.fault_kv, answer.fault_kv, result.prefault_kv)
+def _voltage_gaps(result: FaultResult, answer: Answer) -> Iterator[Gap]:
+    yield from _gap("voltage at the fault", result.fault_kv, answer.fault_kv, result.prefault_kv)
     for key, volts in answer.voltage_kv.items():
         node = result.network.node_of[key]
         scale = float(abs(answer.before_kv[key]).max())
-        yield from _differ(f"voltage before at {key}", result.prefault_voltages_kv[node], answer.before_kv[key], scale)
-        yield from _differ(f"voltage at {key}", result.voltages_kv[node], volts, scale)
+        yield from _gap(f"voltage before at {key}", result.prefault_voltages_kv[node], answer.before_kv[key], scale)
+        yield from _gap(f"voltage at {key}", result.voltages_kv[node], volts, scale)
 
 
-def _differ(what: str, ours: ComplexArray | complex, theirs: ComplexArray | complex, scale: float) -> Iterator[str]:
-    gap = float(np.max(abs(np.asarray(ours) - np.asarray(theirs))))
-    if not gap <= TOLERANCE * scale:
-        yield f"{what}: engine {_polar(ours)}, oracle {_polar(theirs)} (gap {gap / scale:.1e})"
+def _gap(what: str, ours: ComplexArray | complex, theirs: ComplexArray | complex, scale: float) -> Iterator[Gap]:
+    gap = float(np.max(abs(np.asarray(ours) - np.asarray(theirs)))) / scale
+    sentence = "" if gap <= TOLERANCE else f"{what}: engine {_polar(ours)}, oracle {_polar(theirs)} (gap {gap:.1e})"
+    yield gap, sentence
 
 
 def _polar(values: ComplexArray | complex) -> str:

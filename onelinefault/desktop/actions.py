@@ -58,7 +58,7 @@ COMMANDS: Final[tuple[Command, ...]] = (
     _c("page_setup", "Pa&ge setup…", "Paper of the sheet, paper of the printer, true scale or fitted", "Ctrl+Shift+P"),
     _c("print_preview", "Print pre&view…", "See the sheets as the printer will show them"),
     _c("print_sheets", "&Print…", "Print the sheets with the figures shown", "Ctrl+P", short="Print"),
-    _c("export_drawing", "Export &drawing…", "Write the annotated sheets as PDF, SVG or PNG", "Ctrl+E"),
+    _c("export_drawing", "Export &drawing…", "Write the annotated sheets as PDF, SVG or PNG", "Ctrl+Shift+E"),
     _c("export_table", "Export &bus table…", "Write the fault currents of all buses as a table"),
     _c("close_window", "&Quit", "Close the window; asks about unsaved work", "Ctrl+Q"),
     # Edit

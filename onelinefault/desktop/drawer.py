@@ -81,8 +81,9 @@ class Table(QTableView):
             self.setColumnWidth(column, width if width < 40 else int(width * factor))
         self._sharing = False
 
-    def _column_dragged(self, *_: int) -> None:
-        self._dragged = self._dragged or not self._sharing
+    def _column_dragged(self, column: int, *_: int) -> None:
+        last = column == len(self._shares) - 1  # that one takes up the rest by itself
+        self._dragged = self._dragged or not (self._sharing or last)
 
     def follow(self, parts: frozenset[str]) -> None:
         """Select the row of what is selected on the sheet, without saying so."""
@@ -154,7 +155,8 @@ class Drawer(QStackedWidget):
         self._session, self._solver = session, solver
         self.setAccessibleName(self.tr("Drawer of tables"))
         self.is_open = True
-        self._known_errors: frozenset[tuple[str, tuple[str, ...]]] = frozenset()
+        self._known_errors: frozenset[tuple[str, tuple[str, ...], str]] = frozenset()
+        self._known_parts: frozenset[str] = frozenset()
         self.strip = DrawerStrip()
         self.buses = Table(self.tr("Buses"), TableModel(bus_heads(session.choices.kind)))
         self.findings = Table(self.tr("Findings"), TableModel(FINDING_HEADS, mark_column=0))
@@ -177,7 +179,7 @@ class Drawer(QStackedWidget):
         return self.tables[self.currentIndex()]
 
     def _set_columns(self) -> None:
-        self.buses.set_shares((130, 60, 72, 72, 82, 82, 92, 86, 88, 72))
+        self.buses.set_shares((112, 52, 60, 60, 76, 76, 90, 84, 78, 58))
         self.findings.set_shares((34, 420, 380, 140))
         self.findings.horizontalHeader().setSectionResizeMode(0, QHeaderView.ResizeMode.Fixed)
 
@@ -256,9 +258,11 @@ class Drawer(QStackedWidget):
         """Open by itself only for an error that stands in the way of a fault that is asked for."""
         answer = self._solver.answer
         assert answer is not None
-        found = frozenset((f.code, f.parts) for f in answer.findings if f.severity is Severity.ERROR)
-        fresh, self._known_errors = found - self._known_errors, found
-        if self._session.fault is not None and (fresh or (answer.trouble and found)):
+        found = frozenset((f.code, f.parts, f.field) for f in answer.findings if f.severity is Severity.ERROR)
+        fresh = [parts for _, parts, _ in found - self._known_errors]
+        broken = any(self._known_parts.issuperset(parts) for parts in fresh)  # a part just placed is not broken
+        self._known_errors, self._known_parts = found, frozenset(self._session.plant.parts)
+        if self._session.fault is not None and (broken or (fresh and answer.trouble)):
             self.open_tab(FINDINGS)
 
     def _turn_to(self, index: int) -> None:

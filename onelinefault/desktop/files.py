@@ -28,12 +28,22 @@ _RESTORE, _DISCARD, _LATER = "restore", "discard", "later"
 
 
 class Files(QObject):
-    """Does the commands of their names for one window."""
+    """Does the commands of their names for one window.
+
+    take_pending: takes what is typed somewhere and not yet entered, so that it is saved too.
+    """
 
     def __init__(
-        self, session: Session, settings: Settings, window: QWidget, notice: NoticeBar, state_folder: Path
+        self,
+        session: Session,
+        settings: Settings,
+        window: QWidget,
+        notice: NoticeBar,
+        state_folder: Path,
+        take_pending: Callable[[], None],
     ) -> None:
         super().__init__(window)
+        self._take_pending = take_pending
         self._session, self._settings, self._window = session, settings, window
         self._notice, self._state_folder = notice, state_folder
         self._keeper = Keeper(state_folder)
@@ -69,6 +79,7 @@ class Files(QObject):
 
     def save(self) -> None:
         """Save to the plant's file, or ask for a name."""
+        self._take_pending()
         if self._session.path is None:
             self.save_as()
         else:
@@ -76,6 +87,7 @@ class Files(QObject):
 
     def save_as(self) -> None:
         """Ask for a name and save."""
+        self._take_pending()
         dialog = self._file_dialog(self.tr("Save the plant"), QFileDialog.AcceptMode.AcceptSave)
         dialog.selectFile(self._suggested_name())
         dialog.fileSelected.connect(self._save_chosen)
@@ -86,6 +98,7 @@ class Files(QObject):
 
     def may_close(self) -> bool:
         """Whether the window may close now; if not, the person is asked, and it is closed after the answer."""
+        self._take_pending()
         if self._letting_go or not self._session.edited:
             return True
         self._ask_unsaved(self._close_window)
@@ -243,6 +256,7 @@ class Files(QObject):
     # the question about unsaved work
 
     def _after_asking(self, then: Callable[[], None]) -> None:
+        self._take_pending()
         if self._session.edited:
             self._ask_unsaved(then)
         else:

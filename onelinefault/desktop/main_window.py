@@ -51,9 +51,10 @@ class MainWindow(QMainWindow):
         self.canvas = Canvas(session, solver)
         self.sheet_tabs, self.find_bar, self.notice = SheetTabs(session), FindBar(session), NoticeBar()
         self.type_ahead = TypeAhead(self.canvas)
-        self.files = Files(session, settings, self, self.notice, state_folder)
-        self.printing = Printing(session, solver, settings, self)
         self.panels = Panels(self, session, solver)
+        pending = self.panels.inspector.take_pending
+        self.files = Files(session, settings, self, self.notice, state_folder, pending)
+        self.printing = Printing(session, solver, settings, self)
         self._edit_commands = EditCommands(session, self.canvas)
         doers = (
             self._edit_commands, PartCommands(session, self.canvas), FaultCommands(session, self.canvas),
@@ -192,7 +193,6 @@ class MainWindow(QMainWindow):
 
     def closeEvent(self, event: QCloseEvent) -> None:
         """Ask about unsaved work; then remember the layout and let go of file and thread."""
-        self.panels.inspector.take_pending()
         if not self.files.may_close():
             event.ignore()
             return

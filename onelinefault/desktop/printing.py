@@ -10,7 +10,7 @@ from pathlib import Path
 from typing import TYPE_CHECKING, Final
 
 from PySide6.QtCore import QMarginsF, QObject, QRectF, QSizeF
-from PySide6.QtGui import QPageLayout, QPageSize, QPainter
+from PySide6.QtGui import QPageLayout, QPageSize, QPaintEngine, QPainter
 from PySide6.QtWidgets import QDialog, QFileDialog, QMessageBox, QWidget
 
 from onelinefault.desktop.page_setup import PageSetup
@@ -118,16 +118,14 @@ class Printing(QObject):
     def paint_pages(self, printer: QPrinter) -> None:
         """Paint all sheets on a printer, fitted to its paper or at true scale over several pages."""
         painter = QPainter()
-        first = True
+        true_scale = self._settings.print_scale == TRUE_SCALE
         for sheet in self.sheets():
-            paper = self.paper_for(sheet.width_mm, sheet.height_mm)
-            for part in page_parts((sheet.width_mm, sheet.height_mm), paper, self._settings.print_scale == TRUE_SCALE):
-                set_paper(printer, paper)
-                if first:
-                    painter.begin(printer)
-                    first = False
-                else:
+            paper = turn_paper(printer, self.paper_for(sheet.width_mm, sheet.height_mm))
+            for part in page_parts((sheet.width_mm, sheet.height_mm), paper, true_scale):
+                if painter.isActive():
                     printer.newPage()
+                else:
+                    painter.begin(printer)
                 paint_page(painter, sheet, paper, part, printer.resolution() / 25.4)
         painter.end()
 
@@ -208,6 +206,26 @@ def set_paper(printer: QPrinter, size_mm: tuple[float, float]) -> None:
     way = QPageLayout.Orientation.Landscape if size_mm[0] > size_mm[1] else QPageLayout.Orientation.Portrait
     page = QPageSize(upright, QPageSize.Unit.Millimeter, "", QPageSize.SizeMatchPolicy.FuzzyMatch)
     printer.setPageLayout(QPageLayout(page, way, QMarginsF(0, 0, 0, 0), QPageLayout.Unit.Millimeter))
+
+
+def turn_paper(printer: QPrinter, size_mm: tuple[float, float]) -> tuple[float, float]:
+    """Ask a printer for a page of this size, and give the size that it really has, mm.
+
+    A printer may not have the paper, and a preview cannot change it from page to page.
+    """
+    from PySide6.QtPrintSupport import QPrinter  # noqa: PLC0415
+
+    page = _page_mm(printer)
+    same = abs(page[0] - size_mm[0]) < _SAME_MM and abs(page[1] - size_mm[1]) < _SAME_MM
+    busy = printer.printerState() == QPrinter.PrinterState.Active
+    if not same and (not busy or printer.paintEngine().type() == QPaintEngine.Type.Pdf):
+        set_paper(printer, size_mm)
+    return _page_mm(printer)
+
+
+def _page_mm(printer: QPrinter) -> tuple[float, float]:
+    page = printer.pageLayout().fullRect(QPageLayout.Unit.Millimeter)
+    return page.width(), page.height()
 
 
 def page_parts(sheet_mm: tuple[float, float], paper_mm: tuple[float, float], true_scale: bool) -> list[QRectF]:

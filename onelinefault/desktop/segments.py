@@ -9,6 +9,16 @@ from PySide6.QtGui import QKeyEvent
 from PySide6.QtWidgets import QButtonGroup, QHBoxLayout, QToolButton, QWidget
 
 
+class _Segment(QToolButton):
+    """A button that leaves the arrow keys to the row it stands in."""
+
+    def keyPressEvent(self, event: QKeyEvent) -> None:
+        if event.key() in (Qt.Key.Key_Left, Qt.Key.Key_Right):
+            event.ignore()
+        else:
+            super().keyPressEvent(event)
+
+
 class Segments(QWidget):
     """chosen: the key of the button a person pressed. Arrow keys move the choice."""
 
@@ -35,7 +45,7 @@ class Segments(QWidget):
             button.deleteLater()
         self.buttons = {}
         for key, words, tip in choices:
-            button = QToolButton()
+            button = _Segment()
             button.setText(words)
             button.setCheckable(True)
             button.setProperty("part", "segment")
@@ -46,6 +56,7 @@ class Segments(QWidget):
             button.setFocusPolicy(Qt.FocusPolicy.TabFocus)
             self._group.addButton(button)
             self._row.addWidget(button)
+            button.show()  # at once, so that size hints count it
             self.buttons[key] = button
 
     def show_choice(self, key: str) -> None:
@@ -63,16 +74,17 @@ class Segments(QWidget):
                 button.setProperty("tight", tight)
                 button.style().unpolish(button)
                 button.style().polish(button)
+        self._row.invalidate()
 
     def keyPressEvent(self, event: QKeyEvent) -> None:
         """Left and right go to the neighbour and choose it."""
         step = {Qt.Key.Key_Left: -1, Qt.Key.Key_Right: 1}.get(Qt.Key(event.key()))
         keys = list(self.buttons)
-        focused = next((key for key in keys if self.buttons[key].hasFocus()), None)
-        if step is None or focused is None:
+        now = next((place for place, key in enumerate(keys) if self.buttons[key].isChecked()), -1)
+        if step is None or not keys:
             super().keyPressEvent(event)
             return
-        button = self.buttons[keys[(keys.index(focused) + step) % len(keys)]]
+        button = self.buttons[keys[(now + step) % len(keys)]]
         button.setFocus(Qt.FocusReason.OtherFocusReason)
         button.click()
 

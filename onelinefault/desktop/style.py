@@ -169,13 +169,13 @@ QTabBar::tab:hover { color: @ink; }
 QTabBar::tab:focus { color: @focus; }
 QTableView { background: @panel; color: @ink; border: none; gridline-color: transparent; font-size: @size_text;
     selection-background-color: @accent_tint; selection-color: @ink; outline: none; }
-QTableView::item { padding: 0 6px; border: none; }
+QTableView::item { padding: 0 3px; border: none; }
 QTableView:focus { border: 1px solid @focus; }
 QHeaderView { background: @panel; }
-QHeaderView::section { background: @panel; color: @muted; border: none; padding: 3px 9px; font-size: @size_small;
+QHeaderView::section { background: @panel; color: @muted; border: none; padding: 3px 6px; font-size: @size_small;
     font-weight: bold; }
 QTableCornerButton::section { background: @panel; border: none; }
-QFrame[part="rule"] { background: @line; border: none; max-height: 1px; min-height: 1px; }
+QDialogButtonBox { dialogbuttonbox-buttons-have-icons: 0; }
 QFrame[part="notice"] { background: @accent_tint; border: none; border-bottom: 1px solid @line; }
 QFrame[part="popup"] { background: @panel; border: 1px solid @focus; border-radius: 7px; }
 QListWidget { background: @field; color: @ink; border: 1px solid @line; border-radius: 5px; font-size: @size_row;

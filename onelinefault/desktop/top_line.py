@@ -6,7 +6,7 @@ from typing import TYPE_CHECKING, Final
 
 from PySide6.QtCore import QPointF, QSize, Qt, Signal
 from PySide6.QtGui import QKeyEvent, QMouseEvent, QPainter, QPen, QResizeEvent
-from PySide6.QtWidgets import QComboBox, QHBoxLayout, QLabel, QSizePolicy, QToolButton, QWidget
+from PySide6.QtWidgets import QComboBox, QHBoxLayout, QLabel, QLayout, QSizePolicy, QToolButton, QWidget
 
 from onelinefault.desktop.combo import Combo
 from onelinefault.desktop.elided import ElidedLabel
@@ -126,6 +126,7 @@ class TopLine(QWidget):
         undo, redo, printing = self._buttons
         method, fault, arrangement, detail = self._labels
         self._row = QHBoxLayout(self)
+        self._row.setSizeConstraint(QLayout.SizeConstraint.SetNoConstraint)  # a narrow line drops its labels
         self._row.setContentsMargins(14, 0, 14, 0)
         groups: list[list[QWidget]] = [
             [self.name, self.edited], [undo, redo], [method, self.method], [fault, self.kind, self.phases],
@@ -167,6 +168,7 @@ class TopLine(QWidget):
             for key, name in known:
                 self.arrangement.addItem(name, key)
         self._show_arrangement()
+        self._fit()
 
     def show_choices(self) -> None:
         """Kind, phases, level, arrangement and detail as the session has them."""
@@ -239,6 +241,7 @@ class TopLine(QWidget):
         self.arrangement.setMinimumContentsLength((16, 13, 9)[compact])
         for box in self._inner:
             box.setSpacing(3 if tight else 6)
+            box.invalidate()
         for button in self._buttons:
             button.setProperty("tight", tight)
             button.style().unpolish(button)

@@ -52,7 +52,7 @@ def _source_lines(plant: Plant, result: FaultResult) -> list[Line]:
         if abs(share.share) >= _LEAST_SHARE:
             part = plant.parts.get(share.part)
             name = (part.name or part.title) if part else share.part
-            lines.append(Line(name, f"{share.share * 100:.3g} %  {current_text(abs(share.at_fault_ka))}"))
+            lines.append(Line(name, f"{share.share * 100:.1f} %  {current_text(abs(share.at_fault_ka))}"))
     return lines
 
 

@@ -3,33 +3,19 @@
 from collections.abc import Mapping
 
 from onelinefault.engine.network import Network
+from onelinefault.model.completion_rules import ASSUMED_DEFAULTS
 from onelinefault.model.fields import Basis, fields_of
 from onelinefault.model.part import Part
 from onelinefault.model.plant import Plant
-from onelinefault.model.quantity import Quantity
 
 UNSURE = (Basis.TYPICAL, Basis.GUESSED)
 
-IMPEDANCE_DEFAULTS = frozenset(
-    {
-        "x_over_r",
-        "r0_over_x0",
-        "x0_over_r0",
-        "subtransient_reactance",
-        "zero_sequence_reactance",
-        "zero_sequence_impedance",
-        "efficiency",
-        "power_factor",
-        "locked_rotor_ratio",
-        "current_limit",
-    }
-)
-"""Ratings whose default stands in for a nameplate value; other defaults (tap 0 %, one in parallel) say what is
-usual."""
-
 
 def assumed_names(plant: Plant, network: Network) -> dict[int, tuple[str, ...]]:
-    """For each island the names of its parts whose impedances rest on typical or guessed data, in the plant's order."""
+    """For each island the names of its parts whose data are in part typical or guessed, in the plant's order.
+
+    Only parts that are in the network count: a motor out of service says nothing about a result.
+    """
     islands = _islands_of_parts(network)
     found: dict[int, list[str]] = {}
     for part_id, part in plant.parts.items():
@@ -39,25 +25,24 @@ def assumed_names(plant: Plant, network: Network) -> dict[int, tuple[str, ...]]:
 
 
 def rests_on_assumptions(part: Part) -> bool:
-    """Whether a rating in use is marked typical or guessed, or is a default that stands for an impedance."""
-    for name, field in fields_of(type(part)).items():
-        if part.given(name) is not None:
-            if part.basis.get(name) in UNSURE and name not in ("rated_current", "rated_time"):
-                return True
-        elif (
-            isinstance(field.default, Quantity)
-            and name in IMPEDANCE_DEFAULTS
-            and all(part.given(other) is None for other in field.alternatives)
-        ):
-            return True
-    return False
+    """Whether a rating in use is marked typical or guessed, or a default stands in for a nameplate value."""
+    if part.basis and any(basis in UNSURE and part.given(name) is not None for name, basis in part.basis.items()):
+        return True
+    defaults = ASSUMED_DEFAULTS.get(type(part))
+    if not defaults:
+        return False
+    fields = fields_of(type(part))
+    return any(
+        part.given(name) is None and matters(part) and all(part.given(o) is None for o in fields[name].alternatives)
+        for name, matters in defaults
+    )
 
 
 def _islands_of_parts(network: Network) -> Mapping[str, int]:
-    islands = {
-        part: int(network.island[node]) for part, node in zip(network.branch_parts, network.from_node, strict=True)
-    }
-    islands |= {
-        part: int(network.island[node]) for part, node in zip(network.shunt_parts, network.shunt_node, strict=True)
-    }
-    return islands | {converter.part: int(network.island[converter.node]) for converter in network.converters}
+    island = network.island.tolist()
+    nodes = [
+        *zip(network.branch_parts, network.from_node.tolist(), strict=True),
+        *zip(network.shunt_parts, network.shunt_node.tolist(), strict=True),
+        *((converter.part, converter.node) for converter in network.converters),
+    ]
+    return {part: island[node] for part, node in nodes}

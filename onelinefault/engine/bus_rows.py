@@ -1,24 +1,21 @@
 """The table of all buses: every kind of fault at every bus, worked out together."""
 
 import math
-from collections.abc import Mapping, Sequence
-from dataclasses import dataclass
+from collections.abc import Iterator, Mapping, Sequence
+from itertools import repeat
 
 import numpy as np
 
 from onelinefault.engine import peak
 from onelinefault.engine.boundary import boundary_of
 from onelinefault.engine.faults import Equations, Solutions, solve_everywhere
-from onelinefault.engine.network import ComplexArray, FloatArray, IntArray
+from onelinefault.engine.network import ComplexArray, FloatArray, Network
 from onelinefault.engine.prefault import Prefault
 from onelinefault.engine.results import BusRow
 from onelinefault.engine.symmetrical import to_phases
 from onelinefault.model.consumers import Bus
 from onelinefault.model.fault import Fault, FaultKind, Place
 from onelinefault.model.plant import Plant
-
-Pair = tuple[float, float] | None
-_NO_PHASES = (0.0, 0.0, 0.0)
 
 
 def bus_rows(
@@ -35,78 +32,57 @@ def bus_rows(
     network = equations.network
     buses = [part for part in plant.parts.values() if isinstance(part, Bus) and part.length > 0]
     at = [network.node_of.get((bus.id, "bar"), -1) for bus in buses]
-    nodes = sorted({node for node in at if node >= 0 and network.live[node]})
-    place = {node: number for number, node in enumerate(nodes)}
-    solved = [_solve(equations, prefault, np.array(nodes, np.int64), kind) for kind in kinds] if nodes else []
-    rows: list[BusRow] = []
-    for bus, node in zip(buses, at, strict=True):
-        name, number = bus.name or bus.id, place.get(node)
-        kv = network.nodes[node].nominal_kv if node >= 0 else 0.0
-        if number is None:
-            rows += [_dead_row(name, bus.id, kv, kind) for kind in kinds]
-            continue
-        names = assumed.get(int(network.island[node]), ())
-        rows += [columns.row(number, name, bus.id, kv, names) for columns in solved]
-    return rows
+    is_live = [node >= 0 and bool(network.live[node]) for node in at]
+    live = [(bus, node) for bus, node, feeds in zip(buses, at, is_live, strict=True) if feeds]
+    dead = [(bus, node) for bus, node, feeds in zip(buses, at, is_live, strict=True) if not feeds]
+    island = network.island.tolist()
+    names = [assumed.get(island[node], ()) for _, node in live]
+    tables = [
+        (_live_rows(equations, prefault, kind, live, names), iter([_dead_row(network, *bus, kind) for bus in dead]))
+        for kind in kinds
+    ]
+    return [next(rows[0] if feeds else rows[1]) for feeds in is_live for rows in tables]
 
 
-def _dead_row(name: str, part: str, kv: float, kind: FaultKind) -> BusRow:
-    return BusRow(name, part, kv, kind.value, 0.0, _NO_PHASES, _NO_PHASES, 0.0, None, 0.0, 0.0, None, None, None)
+def _dead_row(network: Network, bus: Bus, node: int, kind: FaultKind) -> BusRow:
+    kv = network.nodes[node].nominal_kv if node >= 0 else 0.0
+    nothing = (0.0, 0.0, 0.0)
+    return BusRow(
+        bus.name or bus.id, bus.id, kv, kind.value, 0.0, nothing, nothing, 0.0, None, 0.0, 0.0, None, None, None
+    )
 
 
-@dataclass(frozen=True, slots=True)
-class _Columns:
-    """The values of one kind of fault, one entry for each node."""
-
-    kind: FaultKind
-    ik: list[float]
-    phases: list[tuple[float, float, float]]
-    angles: list[tuple[float, float, float]]
-    residual: list[float]
-    x_over_r: list[float]
-    level: list[float]
-    peak: list[float]
-    z: tuple[list[Pair], ...]
-
-    def row(self, k: int, name: str, part: str, kv: float, assumed: tuple[str, ...]) -> BusRow:
-        ratio = self.x_over_r[k]
-        return BusRow(
-            name,
-            part,
-            kv,
-            self.kind.value,
-            self.ik[k],
-            self.phases[k],
-            self.angles[k],
-            self.residual[k],
-            None if math.isnan(ratio) else ratio,
-            self.level[k],
-            self.peak[k],
-            self.z[0][k],
-            self.z[1][k],
-            self.z[2][k],
-            assumed,
-        )
-
-
-def _solve(equations: Equations, prefault: Prefault, nodes: IntArray, kind: FaultKind) -> _Columns:
-    """One kind of fault at all the nodes."""
+def _live_rows(
+    equations: Equations,
+    prefault: Prefault,
+    kind: FaultKind,
+    buses: Sequence[tuple[Bus, int]],
+    assumed: Sequence[tuple[str, ...]],
+) -> Iterator[BusRow]:
+    """One kind of fault at all buses that a source feeds."""
     network = equations.network
+    nodes, place = np.unique(np.array([node for _, node in buses], np.int64), return_inverse=True)
     solved = solve_everywhere(equations, prefault, nodes, boundary_of(Fault(Place(""), kind)))
-    nominal = network.nominal_kv[nodes]
+    nominal = np.array([network.nodes[node].nominal_kv for node in nodes])
     phases = phases_of_solutions(solved, network.base_mva / (np.sqrt(3) * nominal))
-    size: FloatArray = abs(phases)
+    size = np.abs(phases)
     ik = size.max(axis=1)
-    return _Columns(
-        kind=kind,
-        ik=ik.tolist(),
-        phases=_triples(size),
-        angles=_triples(_angles(phases)),
-        residual=abs(phases.sum(axis=1)).tolist(),
-        x_over_r=peak.x_over_r(solved.through).tolist(),
-        level=peak.fault_level_mva(ik, nominal).tolist(),
-        peak=peak.peak_ka(ik, solved.through).tolist(),
-        z=tuple(_pairs(solved.z[:, sequence], nominal**2 / network.base_mva) for sequence in range(3)),
+    base_ohm = nominal**2 / network.base_mva
+    return map(
+        BusRow,
+        (bus.name or bus.id for bus, _ in buses),
+        (bus.id for bus, _ in buses),
+        nominal[place].tolist(),
+        repeat(kind.value),
+        ik[place].tolist(),
+        map(tuple, size[place].tolist()),
+        map(tuple, _angles(phases)[place].tolist()),
+        abs(phases.sum(axis=1))[place].tolist(),
+        [None if math.isnan(ratio) else ratio for ratio in peak.x_over_r(solved.through)[place].tolist()],
+        peak.fault_level_mva(ik, nominal)[place].tolist(),
+        peak.peak_ka(ik, solved.through)[place].tolist(),
+        *(_pairs(solved.z[place, sequence], base_ohm[place]) for sequence in range(3)),
+        assumed,
     )
 
 
@@ -125,11 +101,7 @@ def _angles(phases: ComplexArray) -> FloatArray:
     return angles
 
 
-def _triples(values: FloatArray) -> list[tuple[float, float, float]]:
-    return [(a, b, c) for a, b, c in values.tolist()]
-
-
-def _pairs(z: ComplexArray, base_ohm: FloatArray) -> list[Pair]:
+def _pairs(z: ComplexArray, base_ohm: FloatArray) -> list[tuple[float, float] | None]:
     closed = np.isfinite(z)
     r, x = (np.where(closed, z, 0.0).view(np.float64).reshape(-1, 2) * base_ohm[:, None]).T.tolist()
     return [(a, b) if there else None for a, b, there in zip(r, x, closed.tolist(), strict=True)]

@@ -58,7 +58,10 @@ class Scales:
 
 @dataclass(frozen=True, eq=False)
 class Translator:
-    """Makes results of solutions; holds all that is the same for every fault in a network."""
+    """Makes results of solutions; holds all that is the same for every fault in a network.
+
+    terminal_scale (t, 3): the turned base current at each terminal.
+    """
 
     case: Case
     equations: Equations
@@ -66,14 +69,17 @@ class Translator:
     scales: Scales
     terminals: Terminals
     inner: InnerCurrents
+    terminal_scale: ComplexArray
 
     @classmethod
     def of(cls, case: Case, equations: Equations, prefault: Prefault, others: Iterable[TerminalKey]) -> "Translator":
         """For a network. others: terminals that are not in it (out of service) and shall be listed without current."""
         network = equations.network
         terminals = Terminals.of(network, others)
-        inner = InnerCurrents.of(network.joints, terminals.row)
-        return cls(case, equations, prefault, Scales.of(network), terminals, inner)
+        inner, scales = InnerCurrents.of(network.joints, terminals.row), Scales.of(network)
+        outside = np.zeros((1, 3), np.complex128)  # terminals that are in no node have −1, the last row
+        terminal_scale: ComplexArray = np.concatenate((scales.turned_ka, outside))[terminals.node]
+        return cls(case, equations, prefault, scales, terminals, inner, terminal_scale)
 
     def result(
         self,
@@ -157,9 +163,7 @@ class Translator:
         fault_phases: ComplexArray,
     ) -> tuple[ComplexArray, ByKey[str]]:
         """Phase currents at all terminals, shape (t, 3), and in all wires."""
-        outside = np.zeros((1, 3))  # terminals that are in no node have −1, the last row
-        scale: ComplexArray = np.concatenate((self.scales.turned_ka * reference, outside))[self.terminals.node]
-        terminal = phases_ka(self.terminals.currents_pu(*elements), scale)
+        terminal = phases_ka(self.terminals.currents_pu(*elements), self.terminal_scale * reference)
         leaving = terminal.copy()
         if site.terminal is not None:
             leaving[self.terminals.row[site.terminal]] += fault_phases

@@ -66,7 +66,7 @@ class InnerCurrents:
         """
         flow = _times(self.G, -into_parts)
         if self.gram is not None:
-            around = _times(self.rings.T, flow)
+            around = _times(self.rings.T.tocsr(), flow)
             flow = flow - _times(self.rings, self.gram.solve(around.real) + 1j * self.gram.solve(around.imag))
         return flow
 
@@ -97,8 +97,7 @@ class _Forest:
         root[component[by_degree]] = by_degree
         start, goal = np.concatenate((a, b, np.full(count, n))), np.concatenate((b, a, root))
         whole = csr_array((np.ones(len(start)), (start, goal)), shape=(n + 1, n + 1))
-        _, parent = breadth_first_order(whole, n, directed=True)
-        parent = np.asarray(parent[:n], np.int64)
+        parent = np.asarray(breadth_first_order(whole, n, directed=True)[1][:n], np.int64)
         parent[parent == n] = -1
         key, first = np.unique(np.concatenate((a, b)) * n + np.concatenate((b, a)), return_index=True)
         inner = np.flatnonzero(parent >= 0)
@@ -133,7 +132,7 @@ class _Forest:
         if not rows:
             return csr_array(shape)
         entries = (np.concatenate(signs).astype(np.float64), (np.concatenate(rows), np.concatenate(columns)))
-        return coo_array(entries, shape=shape).tocsr()
+        return csr_array(coo_array(entries, shape=shape))
 
 
 def _rings(forest: _Forest, a: IntArray, b: IntArray) -> csr_array:
@@ -143,7 +142,7 @@ def _rings(forest: _Forest, a: IntArray, b: IntArray) -> csr_array:
         return csr_array((len(a), 0))
     paths = forest.paths()
     itself = csr_array((np.ones(len(extra)), (np.arange(len(extra)), extra)), shape=(len(extra), len(a)))
-    return (itself + paths[b[extra]] - paths[a[extra]]).T.tocsr()
+    return csr_array((itself + paths[b[extra]] - paths[a[extra]]).T)
 
 
 def _times(matrix: csr_array, operand: ComplexArray) -> ComplexArray:

@@ -70,7 +70,8 @@ class Network:
     neutral_terms: (part, side label, kind of element "branch from" | "branch to" | "shunt", index, factor): the current
     to earth in a star point is factor · 3 I0 of that element's terminal (kA on the side's own base).
     displacement_deg: angle by which positive-sequence quantities at the node lead those of its island's reference node.
-    live: whether any source or converter feeds the node. joints: closed devices and wires for the currents inside nodes.
+    live: whether any source or converter feeds the node. joints: closed devices and wires, for the currents inside
+    nodes.
     """
 
     base_mva: float

@@ -44,6 +44,8 @@ def place_named(plant: Plant, name: str) -> Place:
 
 
 def _part_named(plant: Plant, name: str) -> Part | None:
+    if not name.strip():
+        return None
     found = sorted(plant.named(name), key=lambda part: part.kind != "bus")
     return found[0] if found else plant.parts.get(name.strip())
 

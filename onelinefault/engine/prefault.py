@@ -46,11 +46,11 @@ class Potentials:
         there = np.flatnonzero((network.y_series[:, sequence] != 0) & (network.from_node != network.to_node))
         one, other, t = network.from_node[there], network.to_node[there], network.ratio[there, sequence]
         graph = csr_array((np.ones(len(one)), (one, other)), shape=(n, n))
-        count, component = connected_components(graph, directed=False)
+        count, found = connected_components(graph, directed=False)
+        component = np.asarray(found, np.int64)
         root = np.full(count, -1, np.int64)
         for nodes in (np.arange(n)[::-1], np.array(wanted_roots, np.int64)[::-1]):
             root[component[nodes]] = nodes
-        component = np.asarray(component, np.int64)
         if (t == 1.0).all():
             return cls(np.ones(n), component, root)
         return cls(_along_tree(n, one, other, t, root), component, root)
@@ -69,8 +69,8 @@ def _along_tree(n: int, one: IntArray, other: IntArray, t: FloatArray, root: Int
     start, goal, step = start[chosen], goal[chosen], step[chosen]
     above = np.full(len(root), n)  # a node above all roots makes the forest one tree
     edges = (np.ones(len(start) + len(root)), (np.concatenate((start, above)), np.concatenate((goal, root))))
-    _, parent = breadth_first_order(csr_array(edges, shape=(n + 1, n + 1)), n, directed=True)
-    parent = np.asarray(parent[:n], np.int64)
+    _, predecessors = breadth_first_order(csr_array(edges, shape=(n + 1, n + 1)), n, directed=True)
+    parent = np.asarray(predecessors[:n], np.int64)
     ratio = np.ones(n + 1)
     inner = np.flatnonzero(parent < n)
     ratio[inner] = step[np.searchsorted(key, parent[inner] * n + inner)]
@@ -130,7 +130,8 @@ class Prefault:
     def at(self, nodes: IntArray) -> ComplexArray:
         """The voltage at each of these nodes for a fault there, shape (k,)."""
         if self.no_load is not None:
-            return np.asarray(self.no_load[nodes])
+            solved: ComplexArray = self.no_load[nodes]
+            return solved
         return np.where(self.network.live[nodes], self.factor, 0.0).astype(np.complex128)
 
     def at_others(self, nodes: IntArray, others: IntArray) -> ComplexArray:

@@ -52,7 +52,7 @@ def star_legs(pairs: Legs) -> Legs:
 
 
 def _without_shorts(part: Part, legs: Legs) -> Legs:
-    """A leg that vanishes (10 %, 16 %, 6 %: the middle one does) becomes ``THIN`` of the largest, so that it has a 1/z."""
+    """A leg that vanishes (10 %, 16 %, 6 %: the middle one does) becomes ``THIN`` of the largest, so 1/z exists."""
     largest = max(abs(z) for z in legs)
     admittance(part, largest)
     z_high, z_middle, z_low = (z if abs(z) > THIN * largest else THIN * largest * 1j for z in legs)

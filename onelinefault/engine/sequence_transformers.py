@@ -115,7 +115,7 @@ def _windings(part: Transformer, high_kv: float, low_kv: float) -> tuple[Winding
 
 
 def _leakage_pu(part: Transformer) -> complex:
-    """Short-circuit impedance on the transformer's own rating; R from X/R, or from the load loss when X/R is not given."""
+    """Short-circuit impedance on the transformer's own rating; R from X/R, else from the load loss."""
     size = in_unit(part, "impedance", "pu")
     loss = part.given("load_loss")
     if part.given("x_over_r") is not None or not isinstance(loss, Quantity):

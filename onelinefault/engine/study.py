@@ -90,7 +90,7 @@ class Study:
         """
         network = self.network
         site = site_of(self.plant, network, self._branch_of, fault.place)
-        boundary = boundary_of(fault, float(network.base_ohm[site.node]))
+        boundary = boundary_of(fault, float(self._translator.scales.base_ohm[site.node]))
         split = None
         if not network.live[site.node]:
             spot, solution = self._nothing(site.node)

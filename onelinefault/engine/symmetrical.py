@@ -25,8 +25,14 @@ SEQUENCES_OF_PHASES: ComplexArray = PHASES_OF_SEQUENCES.conj().T / 3
 
 
 def to_phases(sequences: ComplexArray) -> ComplexArray:
-    """Phase quantities of sequence quantities, shape (..., 3) both."""
-    phases: ComplexArray = sequences @ PHASES_OF_SEQUENCES.T
+    """Phase quantities of sequence quantities, shape (..., 3) both. The matrix is written out: much faster for many."""
+    positive, negative, zero = (sequences[..., s] for s in range(3))
+    phases = np.empty(sequences.shape, np.complex128)
+    both, ahead = positive + negative, TURN.imag * 1j * (positive - negative)
+    phases[..., 0] = zero + both
+    behind = zero - 0.5 * both
+    phases[..., 1] = behind - ahead
+    phases[..., 2] = behind + ahead
     return phases
 
 

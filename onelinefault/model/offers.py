@@ -96,9 +96,10 @@ def _code_letters(part: InductionMotor, tables: Tables, _frequency_hz: float) ->
             yield Offer(label, {"locked_rotor_ratio": f"{ratio:.3g}"}, tables.sources["nema_code_letters"].source)
 
 
-def _transformers(_part: Transformer, tables: Tables, frequency_hz: float) -> Iterator[Offer]:
+def _transformers(_part: Transformer, tables: Tables, _frequency_hz: float) -> Iterator[Offer]:
+    """European units: their losses go with the impedances of IEC 60076-5, whatever the plant's frequency."""
     for kva, watt in tables.load_loss_w:
-        z = transformer_impedance(tables, kva / 1000, None, None, frequency_hz)
+        z = transformer_impedance(tables, kva / 1000, None, None, 50)
         texts = {"rated_power": f"{kva:g} kVA", "impedance": z.text, "load_loss": f"{watt / 1000:g} kW"}
         source = f"Z {z.source}; load loss {tables.sources['eu_548_2014_load_loss'].source}"
         yield Offer(f"{kva:g} kVA distribution transformer, {z.text}", texts, source)

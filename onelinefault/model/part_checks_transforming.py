@@ -19,6 +19,7 @@ from onelinefault.model.values import Neutral
 
 _LOW_VOLTAGE_KV = 1.0
 _LARGEST_LOW_VOLTAGE_KA = 7.5
+_LEAST_X_OVER_R = 0.4  # the smallest distribution units, by their permitted losses
 _SMALL_LEG = 0.2  # a negative leg up to this share of the largest one is a common thing
 _SIDES3 = ("high", "medium", "low")
 _SIDES_AUTO = ("high", "low", "tertiary")
@@ -28,7 +29,7 @@ def check_transformer(part: Transformer) -> Findings:
     """Two windings: voltages, impedance, losses, vector group against earthing, tap, size against voltage."""
     yield from _highest_first(part, "low_voltage")
     yield from outside(part, "impedance", "%", (2, 25), "impedance-unusual")
-    yield from outside(part, "x_over_r", "", (0.8, 80), "x-over-r")
+    yield from outside(part, "x_over_r", "", (_LEAST_X_OVER_R, 80), "x-over-r")
     yield from outside(part, "tap", "%", (-15, 15), "tap-unusual")
     yield from outside(part, "zero_sequence_impedance", "%", (5, 300), "zero-sequence-unusual")
     yield from _load_loss(part)
@@ -64,7 +65,7 @@ def _load_loss(part: Transformer) -> Findings:
         message = f"its load loss of {part.text('load_loss')} alone would be more than its impedance"
         remedy = "Correct the load loss or the impedance, or enter X/R instead"
         yield fails(part, "load-loss", message, remedy, "load_loss")
-    elif not z / 80 <= loss <= z / math.hypot(1, 0.8):
+    elif not z / 80 <= loss <= z / math.hypot(1, _LEAST_X_OVER_R):
         message = f"a load loss of {part.text('load_loss')} is {100 * loss:.2g} % of rated power, which is unusual"
         yield warns(part, "load-loss-unusual", message, "Check the load loss and its unit", "load_loss")
 

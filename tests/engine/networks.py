@@ -154,7 +154,8 @@ def branch_blocks(network, b):
 
 
 def phase_matrix(network):
-    """The admittance matrix of all nodes in phases, shape (3n, 3n); complex but not symmetric where phases are turned."""
+    """The admittance matrix of all nodes in phases, shape (3n, 3n); complex but not symmetric where phases are
+    turned."""
     n = len(network.nodes)
     Y = np.zeros((n, 3, n, 3), complex)
     for b in range(len(network.from_node)):
@@ -168,7 +169,8 @@ def phase_matrix(network):
 
 
 def phase_domain_fault(network, before, node, kind, phases="", zf=0, zg=0):
-    """Voltages (n, 3) and fault current (3,) per unit by one dense solve of all nodes' phases and the fault's equations.
+    """Voltages (n, 3) and fault current (3,) per unit by one dense solve of all nodes' phases and the fault's
+    equations.
 
     before (n,): complex phase-a voltages before the fault, in each node's own turned frame.
     """

@@ -24,7 +24,8 @@ def beside(one, other):
 
 @pytest.mark.parametrize("zf,zg", [(0j, 0j), (ZF, 0j), (0j, ZG), (ZF, ZG)])
 def test_closed_forms_of_the_four_kinds(zf: complex, zg: complex) -> None:
-    """Positive-sequence current of each kind (Anderson 1973, chapter 3; the conventions for Zf and Zg are the design's)."""
+    """Positive-sequence current of each kind (Anderson 1973, chapter 3; the conventions for Zf and Zg are the
+    design's)."""
     z1, z2, z0 = Z
     expected = {
         THREE: 1 / (z1 + zf),

@@ -151,10 +151,11 @@ def everything() -> Plant:
     """A part of every kind, fully rated, on one bus with the rest of its terminals on buses of their own."""
     sketch = Sketch()
     common = sketch.bus(33.0, "Main")
+    later = {"transient_reactance": "25 %", "synchronous_reactance": "180 %"}
     own = {
         "supply": {"nominal_voltage": "33 kV", "fault_level_max": "750 MVA", "x0_over_x1": "3"},
-        "synchronous_generator": {"rated_power": "20 MVA", "rated_voltage": "33 kV", "neutral": "solid"},
-        "synchronous_motor": {"rated_power": "2 MW", "rated_voltage": "33 kV"},
+        "synchronous_generator": {"rated_power": "20 MVA", "rated_voltage": "33 kV", "neutral": "solid"} | later,
+        "synchronous_motor": {"rated_power": "2 MW", "rated_voltage": "33 kV"} | later,
         "induction_motor": {"rated_power": "2 MW", "rated_voltage": "33 kV"},
         "converter_source": {"rated_power": "2 MVA", "rated_voltage": "33 kV"},
         "transformer": T1 | {"magnetising_impedance": "60 %"},

@@ -74,12 +74,11 @@ PEAKS = [(case_id, row) for case_id in ("IEC-TN-3PH", "IEC-LV400") for row in at
 
 @pytest.mark.parametrize("case_id, row", PEAKS, ids=[f"{case}-{row['bus']}" for case, row in PEAKS])
 def test_raised_kappa_and_its_limit_on_the_peaks_of_the_worked_networks(case_id: str, row: Row) -> None:
-    """The peak without 1.15 (published at most buses) gives R/X by the κ formula turned round, and that the raised one."""
+    """The peak without 1.15 (mostly published) gives R/X by the κ formula turned round, and that the raised one."""
     ik = value_at(case_id, "Ikss_3ph", row["bus"])
     plain = value_at(case_id, "ip_b_plain", row["bus"]) / (math.sqrt(2) * ik)
     r_over_x = -math.log((plain - 1.02) / 0.98) / 3
     raised = iec.kappa_at_fault(r_over_x, low_voltage=case_id == "IEC-LV400")
-    # at F3 the printed I″k is rounded in its third figure; it cancels in the ratio but not where the limit holds
     close(row, iec.peak_ka(ik, raised))
 
 
@@ -115,7 +114,7 @@ def test_breaking_current_of_a_station_whose_sources_stand_at_the_fault(row: Row
 
 @pytest.mark.parametrize("r_over_x", [0.0, 0.05, 0.1, 0.2, 0.3, 0.5, 0.7, 1.0, 1.2])
 def test_kappa_is_the_largest_current_of_the_circuit_at_its_worst_instant(r_over_x: float) -> None:
-    """Brute force over closing angle and time. The standard's formula has its coefficients 1.02 and 0.98 in two decimals,
+    """Brute force over closing angle and time. The standard prints the coefficients 1.02 and 0.98 with two decimals,
     half a unit of the last place each: κ is good for 0.01 over the range 0 to 1.2 of its figure."""
     phi = math.atan2(1.0, r_over_x)
     time = np.linspace(0, 2 * np.pi, 4001)
@@ -127,6 +126,7 @@ def test_kappa_is_the_largest_current_of_the_circuit_at_its_worst_instant(r_over
 def test_method_a_takes_the_smallest_ratio_of_each_fault() -> None:
     branches = np.array([[0.1, 0.4, 0.9], [0.7, 0.5, 0.6]])
     assert iec.kappa_uniform(branches) == pytest.approx(iec.kappa(np.array([0.1, 0.5])))
+    assert float(iec.kappa_uniform([0.9, 0.2, 0.4])) == float(iec.kappa(0.2))
 
 
 def test_method_b_with_and_without_margin() -> None:
@@ -148,7 +148,7 @@ def test_method_c_returns_the_ratio_of_a_plain_branch() -> None:
 
 @pytest.mark.parametrize("weight", [0.2, 1.0, 5.0])
 def test_method_c_is_within_five_per_cent_of_the_current_in_time(weight: float) -> None:
-    """Accuracy that the standard gives for (c), 5 %: two parallel branches of unlike R/X, exact sum of both in time."""
+    """5 % is what the standard is remembered to give for (c). Two parallel branches of unlike R/X, summed in time."""
     branches = [(0.05, 1.0), (0.8 * weight, 1.0 * weight)]  # R and X at 50 Hz
     time = np.linspace(0, 2 * np.pi, 20001)
     total = np.zeros_like(time)
@@ -184,7 +184,7 @@ def test_direct_current_starts_at_the_crest_and_falls_with_l_over_r(frequency_hz
 
 
 def test_decay_of_machines_near_twice_rated_current() -> None:
-    """Up to twice rated current μ = 1, and a motor's q = 1 as well (without it the test network's buses 4 and 8 miss)."""
+    """Up to twice rated current μ = 1 and a motor's q = 1 (else buses 4 and 8 of the test network miss)."""
     assert float(iec.mu(2.0, 0.1)) == 1.0 and float(iec.mu(2.001, 0.1)) < 1.0
     assert float(iec.motor_decay(2.0, 0.1, 0.1)) == 1.0
     assert float(iec.motor_decay(2.001, 0.1, 0.1)) == pytest.approx(float(iec.q(0.1, 0.1)), rel=1e-2)

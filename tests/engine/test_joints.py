@@ -47,7 +47,8 @@ def board(*pairs, devices=()):
 
 
 def test_a_breaker_between_the_bars_carries_one_bar_only() -> None:
-    """Incomer 1 (10 kA) on bar X, incomer 2 (4 kA) on bar Y, coupler Q between; fault on X: 4 kA through the coupler."""
+    """Incomer 1 (10 kA) on bar X, incomer 2 (4 kA) on bar Y, coupler Q between; fault on X: 4 kA through the
+    coupler."""
     inner, row = board(("I", "X"), ("J", "Y"), ("X", "Qa"), ("Y", "Qb"), devices="Q")
     taken = np.zeros((len(row), 3), complex)
     taken[row["I", "t"]], taken[row["J", "t"]], taken[row["X", "t"]] = -10, -4, 14

@@ -15,8 +15,8 @@ def test_x_over_r_of_usual_pure_and_open_impedances() -> None:
 
 @pytest.mark.parametrize("ratio", [1.0, 5.0, 20.0])
 def test_the_peak_is_what_the_circuit_gives_half_a_cycle_after_closing_at_voltage_zero(ratio: float) -> None:
-    """R-L circuit closed where the steady current would be at its crest, integrated by a general-purpose library: the d.c.
-    part then decays with L/R while the steady part swings to its other crest."""
+    """R-L circuit closed where the steady current would be at its crest, integrated by a general-purpose library: the
+    d.c. part then decays with L/R while the steady part swings to its other crest."""
     omega, R = 2 * np.pi * 50, 1.0
     X = ratio * R
     impedance = np.hypot(R, X)

@@ -22,8 +22,9 @@ def test_phases_and_sequences_are_inverse_to_each_other() -> None:
 
 
 def test_a_delta_star_transformer_of_clock_11_makes_one_one_zero_of_one_phase() -> None:
-    """Dyn11: the low side leads by 30°, so a current in phase a of the star flows in A and back in B of the delta, C has
-    none, and the line current is √3 times the per-unit sequence current (Anderson 1973; IEC 60076-1 figure D.1)."""
+    """Dyn11: the low side leads by 30°, so a current in phase a of the star flows in A and back in B of the delta, C
+    has none, and the line current is √3 times the per-unit sequence current (Anderson 1973; IEC 60076-1 figure
+    D.1)."""
     on_star_side = np.array([1, 1, 0j])
     on_delta_side = to_phases(on_star_side * turns(np.array(-30.0)))
     assert np.allclose(on_delta_side, [np.sqrt(3), -np.sqrt(3), 0], atol=1e-15)

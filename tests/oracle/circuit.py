@@ -138,7 +138,7 @@ RANK_OPEN, RANK_SURE = 1e-12, 1e-10
 
 
 def _all_solutions(a: ComplexArray, b: ComplexArray) -> Solution:
-    """Rank-revealing QR of the evenly scaled matrix, with one round of refinement."""
+    """Rank-revealing QR of the evenly scaled matrix, refined with residuals in longer arithmetic."""
     rows, columns = _even_scales(np.abs(a))
     q, r, order = qr(a * rows[:, None] * columns, pivoting=True, mode="economic")
     size = np.abs(np.diag(r)) / abs(r[0, 0])
@@ -152,8 +152,9 @@ def _all_solutions(a: ComplexArray, b: ComplexArray) -> Solution:
         scaled: ComplexArray = x * columns
         return scaled
 
-    x = particular(b)
-    x = x + particular(b - a @ x)
+    x, exact = particular(b), a.astype(np.clongdouble)
+    for _ in range(3):
+        x = x + particular((b - exact @ x).astype(np.complex128))
     left = (a @ x - b) * rows
     assert np.abs(left).max(initial=0) <= 1e-9 * np.abs(x / columns).max(initial=1), "the circuit contradicts itself"
     free = np.zeros((a.shape[1], a.shape[1] - rank), dtype=complex)

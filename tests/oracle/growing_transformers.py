@@ -42,6 +42,7 @@ class Grower(Protocol):
     def other_kv(self, kv: float) -> float: ...
     def near(self, kv: float) -> float: ...
     def neutral(self) -> str: ...
+    def either(self, *choices: dict[str, str]) -> dict[str, str]: ...
 
 
 def two_windings(grower: Grower) -> None:
@@ -56,10 +57,12 @@ def two_windings(grower: Grower) -> None:
     ratings = {
         "rated_power": f"{grower.share(0.5, 40)} MVA", "high_voltage": f"{rated['high']!r} kV",
         "low_voltage": f"{rated['low']!r} kV", "impedance": f"{grower.share(4, 14)} %",
-        "x_over_r": str(grower.share(2, 40)), "vector_group": group, "tap": f"{tap} %", "tap_side": side,
+        "vector_group": group, "tap": f"{tap} %", "tap_side": side,
         "neutral_high": grower.neutral(), "neutral_low": grower.neutral(),
-        "zero_sequence_impedance": f"{grower.share(70, 140)} %", "x0_over_r0": str(grower.share(2, 40)),
+        "zero_sequence_impedance": f"{grower.share(70, 140)} %",
     }  # fmt: skip
+    ratings |= grower.either({"x_over_r": str(grower.share(2, 40))}, {"load_loss": "1.3 %"})
+    ratings |= grower.either({"x0_over_r0": str(grower.share(2, 40))}, {}, {"magnetising_impedance": "60 %"})
     rated[side] *= 1 + tap / 100
     step = (rated["low"] / rated["high"]) / (low_kv / high_kv)
     hours, ratio = (clock, step) if down else (-clock, 1 / step)
@@ -107,11 +110,15 @@ def three_windings(grower: Grower) -> None:
         "high_voltage": f"{start.kv!r} kV", "medium_voltage": f"{medium_kv!r} kV", "low_voltage": f"{low_kv!r} kV",
         "rated_power_high": f"{mva} MVA", "rated_power_medium": f"{mva} MVA", "rated_power_low": f"{mva / 4!r} MVA",
         "impedance_high_medium": "12 %", "impedance_high_low": high_low, "impedance_medium_low": "6.5 %",
-        "base_high_medium": f"{mva} MVA", "base_high_low": grower.pick(f"{mva} MVA", f"{0.9 * mva} MVA"),
-        "base_medium_low": f"{mva} MVA", "x_over_r": str(grower.share(5, 40)), "vector_group": group,
+        "x_over_r": str(grower.share(5, 40)), "vector_group": group,
         "tap": f"{tap} %", "neutral_high": grower.neutral(), "neutral_medium": grower.neutral(),
         "neutral_low": grower.neutral(), "zero_sequence_impedance": grower.pick("100 %", "85 %"),
     }  # fmt: skip
+    ratings |= grower.either(
+        {},
+        {"base_high_medium": f"{mva} MVA", "base_high_low": f"{mva} MVA", "base_medium_low": f"{mva} MVA"},
+        {"base_high_low": f"{0.9 * mva} MVA", "base_medium_low": f"{mva} MVA"},
+    )
     no_load = start.no_load / (1 + tap / 100)
     ends = [
         grower.new_bus(Spot(start.key, kv, (start.clock + hour) % 12, no_load)).key
@@ -134,7 +141,6 @@ def auto(grower: Grower) -> None:
         "high_voltage": f"{start.kv!r} kV", "low_voltage": f"{low_kv!r} kV", "tertiary_voltage": f"{third_kv!r} kV",
         "rated_power": f"{mva} MVA", "impedance_high_low": f"{grower.share(6, 12)} %",
         "impedance_high_tertiary": "28 %", "impedance_low_tertiary": grower.pick("18 %", "24.3 %"),
-        "base_high_low": f"{mva} MVA", "base_high_tertiary": f"{mva} MVA", "base_low_tertiary": f"{mva} MVA",
         "x_over_r": str(grower.share(10, 50)), "vector_group": f"YNa0d{clock}", "tap": f"{tap} %",
         "neutral": grower.neutral(), "zero_sequence_impedance": grower.pick("100 %", "90 %"),
     }  # fmt: skip

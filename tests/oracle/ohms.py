@@ -125,9 +125,7 @@ def induction(part: InductionMotor, case: Case) -> tuple[complex, complex, compl
     """
     kv = number(part, "rated_voltage", "kV")
     each = number(part, "rated_power", "MW") / number(part, "efficiency", "pu") / number(part, "power_factor", "")
-    count = part.value("count")
-    assert isinstance(count, int)
-    mva = each * count * number(part, "running_share", "pu")
+    mva = each * running(part)
     if mva == 0 or case.moment == "steady":
         return None
     z = from_size(kv**2 / mva / number(part, "locked_rotor_ratio", ""), number(part, "x_over_r", ""))
@@ -136,6 +134,13 @@ def induction(part: InductionMotor, case: Case) -> tuple[complex, complex, compl
     if isinstance(x0, Quantity):
         z0 = complex(z.real, x0.to("ohm") if x0.dimension == "impedance" else x0.to("pu") * kv**2 / mva)
     return z, z, z0
+
+
+def running(part: InductionMotor) -> float:
+    """How many motors of the group run."""
+    count = part.value("count")
+    assert isinstance(count, int)
+    return count * number(part, "running_share", "pu")
 
 
 def length(part: Cable | OverheadLine | Busway, case: Case) -> tuple[complex, complex, complex]:
@@ -158,10 +163,10 @@ def capacitance_uf(part: Cable | OverheadLine | Busway) -> tuple[float, float]:
 
 
 def _runs(part: Cable | OverheadLine | Busway) -> int:
+    if isinstance(part, Cable) and part.size is not None and part.size.runs > 1:
+        return part.size.runs
     runs = part.value("parallel")
     assert isinstance(runs, int)
-    if isinstance(part, Cable) and part.size is not None:
-        runs *= part.size.runs
     return runs
 
 

@@ -152,7 +152,10 @@ class _Build:
             return
         neutral = part.value("neutral")
         assert isinstance(neutral, Neutral)
-        star, earth = windings.star_point(self.circuit, neutral, True, ohms.number(part, "rated_voltage", "kV"))
+        kv, equal = ohms.number(part, "rated_voltage", "kV"), 1.0
+        if isinstance(part, InductionMotor):
+            equal = ohms.running(part)
+        star, earth = windings.star_point(self.circuit, neutral, True, kv, equal)
         if earth is not None:
             self.earths[part.id, "line"] = earth
         self._star(line, star, matrix, emf_kv)

@@ -80,24 +80,37 @@ class Grower:
     def series(self, start: TerminalKey) -> str:
         """A part with a length, or a reactor, wired at its end a. Returns its id."""
         kind = self.pick("cable", "overhead_line", "busway", "reactor")
-        if kind == "reactor":
-            part_id = self.sketch.add(kind, reactance=f"{self.share(0.01, 2)} ohm", x_over_r=str(self.share(5, 80)))
-        else:
-            r, x = self.share(0.02, 0.5), self.share(0.05, 0.4)
-            ratings = {
-                "length": f"{self.share(0.02, 5)} km", "parallel": self.pick("1", "1", "3"),
-                "r_per_length": f"{r} ohm/km", "x_per_length": f"{x} ohm/km",
-                "r0_per_length": f"{3.1 * r:.4g} ohm/km", "x0_per_length": f"{self.share(1, 4) * x:.4g} ohm/km",
-            }  # fmt: skip
-            if kind != "busway":
-                ratings |= {
-                    "capacitance": "0.25 uF/km",
-                    "zero_sequence_capacitance": self.pick("0.25 uF/km", "0.1 uF/km"),
-                }
-            part_id = self.sketch.add(kind, **ratings)
+        part_id = self.sketch.add(kind, **(self.reactor() if kind == "reactor" else self.per_length(kind)))
+        if kind != "reactor":
             self.lengths.append(part_id)
         self.sketch.wire((part_id, "a"), start)
         return part_id
+
+    def reactor(self) -> dict[str, str]:
+        """Ratings of a reactor, in ohm or in per cent."""
+        ratings = {"reactance": f"{self.share(0.01, 2)} ohm", "x_over_r": str(self.share(5, 80))}
+        return ratings | self.either(
+            {}, {"zero_sequence_reactance": "0.4 ohm"}, {"reactance": "6 %", "rated_current": "400 A"}
+        )
+
+    def per_length(self, kind: str) -> dict[str, str]:
+        """Ratings of a cable, line or busway."""
+        r, x = self.share(0.02, 0.5), self.share(0.05, 0.4)
+        ratings = {
+            "length": f"{self.share(0.02, 5)} km", "parallel": self.pick("1", "1", "3"),
+            "r_per_length": f"{r} ohm/km", "x_per_length": f"{x} ohm/km",
+            "r0_per_length": f"{3.1 * r:.4g} ohm/km", "x0_per_length": f"{self.share(1, 4) * x:.4g} ohm/km",
+            "material": self.pick("copper", "aluminium"), "r_temperature": self.pick("20 °C", "75 °C"),
+        }  # fmt: skip
+        if kind != "busway":
+            ratings |= {"capacitance": "0.25 uF/km", "zero_sequence_capacitance": self.pick("0.25 uF/km", "0.1 uF/km")}
+        if kind == "cable" and ratings["parallel"] == "1":
+            ratings |= self.either({}, {"size": "2x240 mm²"})
+        return ratings
+
+    def either(self, *choices: dict[str, str]) -> dict[str, str]:
+        """One of several ways to say the same."""
+        return self.draw(st.sampled_from(choices))
 
     def tie(self) -> None:
         """A line between two places that agree, making a ring."""
@@ -211,8 +224,10 @@ class Grower:
             rated_power=self.pick("2.5 MVA", "12 MVA", "800 kW"), rated_voltage=f"{self.near(spot.kv)!r} kV",
             subtransient_reactance=f"{self.share(9, 25)} %", transient_reactance=f"{self.share(25, 40)} %",
             synchronous_reactance="180 %", negative_sequence_reactance=f"{self.share(9, 30)} %",
-            zero_sequence_reactance=f"{self.share(2, 15)} %", x_over_r=str(self.share(10, 60)),
-            connection=self.pick("star", "star", "delta"), neutral=self.neutral(),
+            zero_sequence_reactance=f"{self.share(2, 15)} %", connection=self.pick("star", "star", "delta"),
+            neutral=self.neutral(), **self.either(
+                {"x_over_r": str(self.share(10, 60))}, {"resistance": "0.7 %"}, {"armature_time_constant": "90 ms"}
+            ),
         )  # fmt: skip
 
     def motor(self) -> None:
@@ -222,7 +237,8 @@ class Grower:
             "induction_motor", spot.key, count=self.pick("1", "7"), rated_power=self.pick("250 kW", "40 hp", "1.8 MW"),
             rated_voltage=f"{self.near(spot.kv)!r} kV", efficiency="95 %", power_factor="0.88",
             locked_rotor_ratio=str(self.share(4, 7)), x_over_r=str(self.share(2, 12)),
-            running_share=self.pick("100 %", "60 %"), connection=self.pick("delta", "star"), neutral="isolated",
+            running_share=self.pick("100 %", "60 %"), connection=self.pick("delta", "star"), neutral=self.neutral(),
+            zero_sequence_reactance="13 %",
         )  # fmt: skip
 
     def passive(self) -> None:

@@ -114,7 +114,7 @@ def test_three_windings(group: str, neutral: str) -> None:
 
 
 def test_a_leg_of_three_windings_may_vanish() -> None:
-    # 10 + 6 − 16 = 0: the engine takes a ten-millionth of the largest leg for it, which shows in the seventh digit at most
+    # 10 + 6 − 16 = 0: the engine takes a ten-millionth of the largest leg for it, seen in the seventh digit
     plant, places = network(
         "transformer3", (33.0, 11.0, 6.6), (True, True, True), high_voltage="33 kV", medium_voltage="11 kV",
         low_voltage="6.6 kV", rated_power_high="20", rated_power_medium="20", rated_power_low="8",

@@ -31,13 +31,18 @@ class Winding:
     z0: complex
 
 
-def star_point(circuit: Circuit, neutral: Neutral | None, brought_out: bool, kv: float) -> tuple[Pin, Pin | None]:
-    """A star point with its earthing. Second: a pin that knows the current into the earth, None when isolated."""
+def star_point(
+    circuit: Circuit, neutral: Neutral | None, brought_out: bool, kv: float, equal: float = 1.0
+) -> tuple[Pin, Pin | None]:
+    """A star point with its earthing. Second: a pin that knows the current into the earth, None when isolated.
+
+    equal: how many equal star points stand for one, each with its own earthing.
+    """
     star = circuit.pin()
     if neutral is None or not brought_out or not neutral.earthed:
         return star, None
     to_earth = star.twin()
-    circuit.coil(to_earth, Pin(None), neutral.z_ohm(kv))
+    circuit.coil(to_earth, Pin(None), neutral.z_ohm(kv) / equal)
     return star, to_earth
 
 

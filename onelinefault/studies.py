@@ -15,7 +15,7 @@ from onelinefault.errors import NoSuchPlaceError, StudyError
 from onelinefault.model.completion import completed_plant
 from onelinefault.model.fault import Fault, FaultKind, Place
 from onelinefault.model.findings import Finding, Severity
-from onelinefault.model.part_checks import check_part
+from onelinefault.model.part_checks import check_part, check_plant
 from onelinefault.model.plant import Plant
 from onelinefault.store.tables import load_tables
 
@@ -45,12 +45,19 @@ def all_findings(plant: Plant, case: Case, arrangement: str | None = None, study
     network = (study or Study(completed, case)).findings
     arranged = plant.arranged(arrangement)
     own = [finding for part in arranged.parts.values() for finding in check_part(part)]
-    return in_order([*own, *network, *assumed])
+    return in_order([*check_plant(arranged), *own, *network, *assumed])
 
 
 def in_order(findings: Iterable[Finding]) -> list[Finding]:
-    """Findings once each, errors before warnings before hints, otherwise in the order given."""
-    return sorted(dict.fromkeys(findings), key=lambda finding: _SEVERITIES.index(finding.severity))
+    """Findings once each, errors before warnings before hints, otherwise in the order given.
+
+    The same remark (code, parts and field) from two places, in other words, is given once, as it came first.
+    """
+    first: dict[object, Finding] = {}
+    for finding in findings:
+        key = (finding.code, finding.parts, finding.field) if finding.parts else finding
+        first.setdefault(key, finding)
+    return sorted(first.values(), key=lambda finding: _SEVERITIES.index(finding.severity))
 
 
 def arrangement_named(plant: Plant, name: str | None) -> str | None:

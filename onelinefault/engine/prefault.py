@@ -147,7 +147,8 @@ class Prefault:
 
     def everywhere(self, node: int) -> ComplexArray:
         """The voltages of all nodes for a fault at this one, shape (n,)."""
-        return self.at_others(np.array([node]), np.arange(len(self.network.nodes)))[0]
+        voltage: ComplexArray = self.at_others(np.array([node]), np.arange(len(self.network.nodes)))[0]
+        return voltage
 
 
 def _driving(network: Network, motors: Collection[str]) -> BoolArray:

@@ -202,10 +202,12 @@ def zero_sequence_share(tables: Tables, group: VectorGroup, core: str) -> Typica
     connection = (
         "zigzag" if "Z" in group.connections else by_windings.get((group.connections[0], group.connections[1]), "any")
     )
-    for row_connection, row_core, share in tables.zero_sequence_shares:
-        if row_connection in (connection, "any") and row_core in (core, "any"):
-            return Typical(f"{share:g} %", f"{group.text}, {core} core", "common practice")
-    raise AssertionError("the last row is for any connection and core")
+    share = next(  # the last row is for any connection and core
+        share
+        for row_connection, row_core, share in tables.zero_sequence_shares
+        if row_connection in (connection, "any") and row_core in (core, "any")
+    )
+    return Typical(f"{share:g} %", f"{group.text}, {core} core", "common practice")
 
 
 def motor_x_over_r(tables: Tables, rated_kv: float, mw_per_pole_pair: float) -> Typical:

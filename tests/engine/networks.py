@@ -108,7 +108,7 @@ class Sketch:
             frequency_hz=50.0,
             nodes=tuple(
                 Node(f"Bus {k}", kv, tuple(keys), (f"B{k}",))
-                for k, (kv, keys) in enumerate(zip(self.kv, self.terminals))
+                for k, (kv, keys) in enumerate(zip(self.kv, self.terminals, strict=True))
             ),
             node_of={key: k for k, keys in enumerate(self.terminals) for key in keys},
             from_node=np.array([b[0] for b in self.branches], np.int64),
@@ -154,23 +154,21 @@ def branch_blocks(network, b):
 
 
 def phase_matrix(network):
-    """The admittance matrix of all nodes in phases, shape (3n, 3n); complex but not symmetric where phases are
-    turned."""
+    """The admittance matrix of all nodes in phases, shape (3n, 3n); not symmetric where phases are turned."""
     n = len(network.nodes)
     Y = np.zeros((n, 3, n, 3), complex)
     for b in range(len(network.from_node)):
         ends = network.from_node[b], network.to_node[b]
-        for row, blocks in zip(ends, branch_blocks(network, b)):
-            for column, block in zip(ends, blocks):
+        for row, blocks in zip(ends, branch_blocks(network, b), strict=True):
+            for column, block in zip(ends, blocks, strict=True):
                 Y[row, :, column, :] += block
-    for node, y in zip(network.shunt_node, network.y_shunt):
+    for node, y in zip(network.shunt_node, network.y_shunt, strict=True):
         Y[node, :, node, :] += phase_block(y, 0)
     return Y.reshape(3 * n, 3 * n)
 
 
 def phase_domain_fault(network, before, node, kind, phases="", zf=0, zg=0):
-    """Voltages (n, 3) and fault current (3,) per unit by one dense solve of all nodes' phases and the fault's
-    equations.
+    """Voltages (n, 3) and fault current (3,) per unit: one dense solution of all phases and the fault's equations.
 
     before (n,): complex phase-a voltages before the fault, in each node's own turned frame.
     """

@@ -8,7 +8,7 @@ from hypothesis import strategies as st
 
 from onelinefault.errors import EntryError
 from onelinefault.model.fields import Basis
-from onelinefault.model.part import describe, place_of
+from onelinefault.model.part import describe, number_in, place_of
 from onelinefault.model.sources import SynchronousGenerator
 from onelinefault.model.transforming import Transformer
 
@@ -46,6 +46,14 @@ def test_typing_does_not_touch_the_part_before() -> None:
 def test_an_unknown_rating_is_named() -> None:
     with pytest.raises(EntryError, match="Transformer has no rating colour; it has rated_power"):
         describe(Transformer, "colour")
+
+
+def test_ratings_as_numbers() -> None:
+    part = SynchronousGenerator(id="p1").with_text("rated_power", "5000 kVA")
+    assert number_in(part, "rated_power", "MVA") == 5
+    assert number_in(part, "rated_power", "MW") is None  # of another dimension
+    assert number_in(part, "x_over_r", "") == 20  # by default
+    assert number_in(part, "rated_voltage", "kV") is None and number_in(part, "connection", "kV") is None
 
 
 def test_titles() -> None:

@@ -51,11 +51,11 @@ def all_findings(plant: Plant, case: Case, arrangement: str | None = None, study
 def in_order(findings: Iterable[Finding]) -> list[Finding]:
     """Findings once each, errors before warnings before hints, otherwise in the order given.
 
-    The same remark (code, parts and field) from two places, in other words, is given once, as it came first.
+    The same remark about a field (code, parts and field) from two places, in other words, is given once, as it came first.
     """
     first: dict[object, Finding] = {}
     for finding in findings:
-        key = (finding.code, finding.parts, finding.field) if finding.parts else finding
+        key = (finding.code, finding.parts, finding.field) if finding.field else finding
         first.setdefault(key, finding)
     return sorted(first.values(), key=lambda finding: _SEVERITIES.index(finding.severity))
 

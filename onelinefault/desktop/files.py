@@ -120,9 +120,10 @@ class Files(QObject):
         self._left_over = next(left_over(self._state_folder), None)
         if self._left_over is not None:
             count = len(self._left_over.found.edits)
-            words = self.tr("Unsaved work was found: {0}, {1} steps. The program had ended before they were saved.")
+            steps = self.tr("1 step") if count == 1 else self.tr("{0} steps").format(count)
+            words = self.tr("Unsaved work was found: {0}, {1}. The program had ended before it was saved.")
             answers = [(_RESTORE, self.tr("Restore")), (_DISCARD, self.tr("Discard")), (_LATER, self.tr("Later"))]
-            self._notice.ask(words.format(self._left_over.name, count), answers)
+            self._notice.ask(words.format(self._left_over.name, steps), answers)
 
     def _answer_notice(self, key: str) -> None:
         if self._left_over is None:

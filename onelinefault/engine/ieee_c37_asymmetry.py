@@ -22,7 +22,7 @@ _ROUNDS_TO_CREST = 24  # each round shortens the error more than eleven times
 def direct_share(x_over_r: ArrayLike, cycles: ArrayLike) -> FloatArray:
     """D.c. current over the a.c. crest √2·I, e^(−2π·t/(X/R)), shape (...), 1 at the start. Confirmed."""
     ratio, time = np.asarray(x_over_r, np.float64), np.asarray(cycles, np.float64)
-    with np.errstate(divide="ignore", invalid="ignore"):
+    with np.errstate(divide="ignore", invalid="ignore", over="ignore"):
         share = np.exp(-2 * np.pi * time / ratio)
     return np.where(time == 0, 1.0, share)
 
@@ -73,7 +73,7 @@ def crest_factor(x_over_r: ArrayLike) -> FloatArray:
     """
     ratio = np.asarray(x_over_r, np.float64)
     phi = np.arctan(ratio)
-    with np.errstate(divide="ignore"):
+    with np.errstate(divide="ignore", over="ignore"):
         decay = 1 / ratio
     angle = phi + np.pi / 2
     for _ in range(_ROUNDS_TO_CREST):
@@ -98,7 +98,7 @@ def quarter_past_crest_factor(x_over_r: ArrayLike) -> FloatArray:
     """
     ratio = np.asarray(x_over_r, np.float64)
     phi = np.arctan(ratio)
-    with np.errstate(divide="ignore"):
+    with np.errstate(divide="ignore", over="ignore"):
         decay = np.exp(-(phi + np.pi / 2) / ratio)
     factor: FloatArray = np.sqrt(2.0) * (1 + np.sin(phi) * decay)
     return factor

@@ -1,7 +1,8 @@
 """The voltages before the fault: the plant unloaded, ratios followed from node to node.
 
 **nominal** (the classical method): the voltage at the fault is nominal times the plant's factor, and everywhere else
-it is what lets the unloaded network carry no current: V_i = t·V_j along every branch. Nothing flows before the fault.
+it is what lets the unloaded network carry no current: V_i = t·V_j along every branch. Nothing flows before the fault,
+also no charging current: that is in the results only as far as the fault changes it.
 
 **no-load**: Y1 V = Σ y E over the sources that set a voltage (supplies and generators, each with its emf at its nominal
 voltage times the factor); taps and off-nominal ratios then show in V. Motors run at the voltage they find and feed no

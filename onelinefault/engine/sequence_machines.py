@@ -18,7 +18,8 @@ from onelinefault.engine.sequence_stamps import (
     word,
     zero_sequence_assumed,
 )
-from onelinefault.model.findings import Finding
+from onelinefault.model.findings import Finding, Severity
+from onelinefault.model.part import describe
 from onelinefault.model.quantity import Quantity
 from onelinefault.model.sources import InductionMotor, SynchronousGenerator, SynchronousMotor
 
@@ -47,7 +48,7 @@ def synchronous_stamps(part: Synchronous, kv: float, setting: Setting) -> Stamps
     own_kv = in_unit(part, "rated_voltage", "kV")
     own_ohm = own_kv**2 / synchronous_mva(part)
     base_ohm = setting.base_ohm(kv)
-    x1 = _ohm(needed(part, _REACTANCE_AT[setting.case.moment]), own_ohm)
+    x1, findings = _positive_ohm(part, own_ohm, _REACTANCE_AT[setting.case.moment])
     x2 = _negative_ohm(part, own_ohm)
     r = _resistance_ohm(part, own_ohm, setting.frequency_hz)
     earthing = earthing_ohm(part, "neutral", own_kv) if word(part, "connection") == "star" else None
@@ -56,7 +57,21 @@ def synchronous_stamps(part: Synchronous, kv: float, setting: Setting) -> Stamps
         z0 = complex(r, _ohm(needed(part, "zero_sequence_reactance"), own_ohm)) + 3 * earthing
         y0 = admittance(part, z0 / base_ohm)
     y = (admittance(part, complex(r, x1) / base_ohm), admittance(part, complex(r, x2) / base_ohm), y0)
-    return Stamps(shunts=(ShuntStamp("line", y, source=True),), star_points=_star_point(earthing))
+    shunt = ShuntStamp("line", y, source=True)
+    return Stamps(shunts=(shunt,), star_points=_star_point(earthing), findings=findings)
+
+
+def _positive_ohm(part: Synchronous, own_ohm: float, name: str) -> tuple[float, tuple[Finding, ...]]:
+    """Reactance of the moment; X″d in its place when it is not given, which errs to the larger current."""
+    given = part.value(name)
+    if isinstance(given, Quantity):
+        return _ohm(given, own_ohm), ()
+    label = describe(type(part), name).label
+    message = f"{part.title}: {label} is not given; X″d is taken in its place, so its current comes out too large."
+    remark = Finding(
+        Severity.WARNING, "reactance-assumed", message, f"Enter {label} of {part.title}.", (part.id,), name
+    )
+    return _ohm(needed(part, "subtransient_reactance"), own_ohm), (remark,)
 
 
 def _ohm(reactance: Quantity, own_ohm: float) -> float:

@@ -33,7 +33,7 @@ class Spot:
     length: int | None = None
 
 
-@dataclass
+@dataclass(eq=False)
 class _Node:
     """A part in the tree of columns. left: of its block, relative to its parent's block; column: within its block."""
 
@@ -209,7 +209,8 @@ def _runs_on(node: _Node, child: _Node, parent: _Node | None) -> bool:
 def _measure_bar(node: _Node, children: Sequence[_Node], parent: _Node | None) -> None:
     above = [child for child in children if child.lowest < node.row]
     below = [child for child in children if child.highest > node.row and not child.tie]
-    aside = [child for child in children if child.tie or child.highest <= node.row <= child.lowest]
+    rest = [child for child in children if child not in above and child not in below]
+    aside = sorted(rest, key=lambda child: not child.tie)  # nothing may stand between a bar and its first tie
     fed_from_above = parent is not None and not parent.tie and parent.row < node.row
     fed_from_below = parent is not None and not parent.tie and not fed_from_above
     start = COLUMN if fed_from_below else 0
@@ -261,8 +262,9 @@ def _row_places(nodes: Mapping[str, _Node]) -> dict[int, int]:
 
 def _bar(node: _Node, columns: Mapping[str, int], nodes: Mapping[str, _Node], y: int) -> Spot:
     """The bar over the columns of its feeders, drawn out to the ties that stand next to it."""
-    near = [key for key in (node.parent, *node.children) if key is not None]
-    reach = [columns[key] for key in near if _under_or_over(nodes[key], node)] or [columns[node.part.id]]
+    reach = [columns[key] for key in node.children if _under_or_over(nodes[key], node)]
+    if not reach or (node.parent is not None and not nodes[node.parent].tie):
+        reach.append(columns[node.part.id])  # where it is fed
     left, right = min(reach) - _BAR_END, max(reach) + _BAR_END
     spare = max(0, _LEAST_BAR - (right - left))
     left, right = left - spare // 2, right + spare - spare // 2
@@ -274,10 +276,9 @@ def _bar(node: _Node, columns: Mapping[str, int], nodes: Mapping[str, _Node], y:
     return Spot(left, y, 0, right - left)
 
 
-def _under_or_over(other: _Node, bar: _Node) -> bool:
-    """Whether a neighbour of a bar stands in the columns that the bar spans, not beyond its end."""
-    is_parent = other.part.id == bar.parent
-    return not other.tie and (is_parent or not other.highest <= bar.row <= other.lowest)
+def _under_or_over(child: _Node, bar: _Node) -> bool:
+    """Whether a bar's feeder stands in the columns that the bar spans, not beyond its end."""
+    return not child.tie and not child.highest <= bar.row <= child.lowest
 
 
 def _upside_down(node: _Node, nodes: Mapping[str, _Node], ends: Iterable[tuple[str, str]]) -> bool:

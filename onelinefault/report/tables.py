@@ -50,6 +50,11 @@ def _ohm(pair: tuple[float, float] | None) -> str:
     return f"{figure(r)}{'−' if x < 0 else '+'}j{figure(abs(x))}"
 
 
+def _without_dust(value: float, beside: float) -> float:
+    """Zero where a value is only what rounding left of the difference of larger ones."""
+    return 0.0 if abs(value) <= 1e-9 * abs(beside) else value
+
+
 def _ratio(value: float | None) -> str:
     return _OPEN if value is None else figure(value)
 
@@ -59,7 +64,7 @@ _TEXT_COLUMNS: Final[tuple[_Column, ...]] = (
     ("Un kV", lambda row: f"{row.nominal_kv:.4g}"),
     ("Fault", lambda row: row.kind),
     ("I″k kA", lambda row: figure(row.ik_ka, 4) + ("*" if row.assumed else "")),
-    ("3I0 kA", lambda row: figure(row.residual_ka, 4)),
+    ("3I0 kA", lambda row: figure(_without_dust(row.residual_ka, row.ik_ka), 4)),
     ("X/R", lambda row: _ratio(row.x_over_r)),
     ("S″k MVA", lambda row: figure(row.fault_level_mva, 4)),
     ("Peak kA", lambda row: figure(row.peak_ka, 4)),

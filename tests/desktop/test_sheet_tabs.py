@@ -1,5 +1,7 @@
 """Tabs of sheets: shown when there are several, turned, moved and renamed in place."""
 
+from collections.abc import Iterator
+
 import pytest
 from PySide6.QtCore import Qt
 from PySide6.QtTest import QTest
@@ -13,7 +15,7 @@ from tests.desktop.windows import pump_session
 
 
 @pytest.fixture
-def bench(qtbot: QtBot) -> tuple[Session, SheetTabs]:
+def bench(qtbot: QtBot) -> Iterator[tuple[Session, SheetTabs]]:
     session, _ = pump_session()
     holder = QWidget()
     tabs = SheetTabs(session)
@@ -22,7 +24,7 @@ def bench(qtbot: QtBot) -> tuple[Session, SheetTabs]:
     holder.resize(600, 60)
     holder.show()
     qtbot.waitExposed(holder)
-    return session, tabs
+    yield session, tabs
 
 
 def line(tabs: SheetTabs) -> QLineEdit:

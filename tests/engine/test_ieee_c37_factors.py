@@ -230,6 +230,7 @@ def test_motors_as_remote_give_the_higher_share(local: float, motors: float) -> 
     total = 20.0
     remote = float(ieee.nacd_ratio(total, local, motors))
     assert remote == pytest.approx((total - local) / total)
+    assert float(ieee.nacd_ratio(total, total, motors)) == 0.0
     as_local = float(ieee.nacd_ratio(total, local, motors, motors_are_remote=False))
     assert as_local == pytest.approx((total - local - motors) / total, abs=1e-12) and as_local <= remote
 
@@ -247,7 +248,7 @@ def test_capability_by_voltage() -> None:
 # --- low voltage and fuses
 
 
-@pytest.mark.parametrize("rating, x_over_r", [(10.0, 1.73), (14.0, 3.18), (20.0, 3.18), (22.0, 4.9), (65.0, 4.9)])
+@pytest.mark.parametrize("rating, x_over_r", [(10.0, 1.73), (10.1, 3.18), (20.0, 3.18), (20.1, 4.9), (65.0, 4.9)])
 def test_test_circuits_of_moulded_case_breakers(rating: float, x_over_r: float) -> None:
     """UL 489 and C37.13 as quoted by a paper of the US services: smallest X/R of the band."""
     pf = ieee.moulded_case_test_power_factor(rating)

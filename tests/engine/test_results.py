@@ -21,8 +21,9 @@ def test_per_unit_and_ohm_are_the_same_impedance() -> None:
 
 
 def test_largest_phase_and_smallest_voltage_left() -> None:
-    """Line to line halves the positive sequence at the fault: phase a keeps 1, b and c 0.5; half way 0.75 of V1, 0.25 of
-    V2, so through the 30° of the transformer one phase is left with 0.75 − 0.25."""
+    """Line to line halves V1 at the fault: phase a keeps 1, b and c 0.5. Half way V1 is 0.75 and V2 0.25, and through
+    the 30° of the transformer they are opposite in one phase: 0.5 is left there.
+    """
     found = result(FaultKind.LINE_TO_LINE)
     assert found.ik_ka == pytest.approx(np.sqrt(3) / 2 * 10 / np.sqrt(3) / 0.4, rel=1e-12)
     assert found.voltage_left == pytest.approx([0.5, 0.5], rel=1e-12)

@@ -107,9 +107,16 @@ def test_apparent_power() -> None:
     assert synchronous_mva(generator()) == pytest.approx(20.0)
 
 
-def test_missing_reactance_of_the_moment_leaves_it_out_by_name() -> None:
-    with pytest.raises(PartLeftOutError, match=r"generator M1.*X′d"):
-        machine(generator(), "transient")
+def test_missing_reactance_of_the_moment_is_taken_as_subtransient_and_said() -> None:
+    stamps = machine(generator(), "transient")
+    assert z_ohm(stamps)[0].imag == pytest.approx(0.15 * 6.05)
+    assert [(f.code, f.field) for f in stamps.findings] == [("reactance-assumed", "transient_reactance")]
+    assert "M1" in stamps.findings[0].message and "X′d" in stamps.findings[0].message
+
+
+def test_missing_power_leaves_the_machine_out_by_name() -> None:
+    with pytest.raises(PartLeftOutError, match=r"generator M1.*Rated power"):
+        machine(generator(rated_power=""))
 
 
 def induction(part: InductionMotor, moment: str = "subtransient") -> Stamps:

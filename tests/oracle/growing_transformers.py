@@ -140,7 +140,7 @@ def auto(grower: Grower) -> None:
     ratings = {
         "high_voltage": f"{start.kv!r} kV", "low_voltage": f"{low_kv!r} kV", "tertiary_voltage": f"{third_kv!r} kV",
         "rated_power": f"{mva} MVA", "impedance_high_low": f"{grower.share(6, 12)} %",
-        "impedance_high_tertiary": "28 %", "impedance_low_tertiary": grower.pick("18 %", "24.3 %"),
+        "impedance_high_tertiary": "28 %", "impedance_low_tertiary": grower.pick("18.3 %", "24.3 %"),
         "x_over_r": str(grower.share(10, 50)), "vector_group": f"YNa0d{clock}", "tap": f"{tap} %",
         "neutral": grower.neutral(), "zero_sequence_impedance": grower.pick("100 %", "90 %"),
     }  # fmt: skip

@@ -72,7 +72,7 @@ class PlantBuilder:
         """
         made = part_class(kind)
         title = f"{made.label.lower()} {name}"
-        if name.strip().casefold() in self._ids:
+        if name.strip() and name.strip().casefold() in self._ids:
             raise EntryError(f"{title}: there is already a part called {name!r}; give it another name")
         if all(sheet != one.id for one in self._sheets):
             raise EntryError(f"{title}: there is no sheet {sheet!r}; add it with sheet()")
@@ -82,7 +82,8 @@ class PlantBuilder:
         part = made(id=self._issued("p"), name=name, sheet=sheet, **place, **state, **plain)
         texts = {key: _text(value) for key, value in ratings.items() if key not in plain}
         self._parts[part.id] = _typed(part, title, texts, _marks(title, texts, basis))
-        self._ids[name.strip().casefold()] = part.id
+        if name.strip():
+            self._ids[name.strip().casefold()] = part.id
         if at is None:
             self._unplaced.add(part.id)
         if "length" not in plain:

@@ -130,7 +130,12 @@ def test_document_and_sheet_rows_become_edits() -> None:
 
 @pytest.mark.parametrize(
     ("name", "key", "text"),
-    [("t1", "impedance", "ten"), ("t1", "impedance", "10 kV"), ("t1", "impedance", "400 %"), ("board", "length", "long")],
+    [
+        ("t1", "impedance", "ten"),
+        ("t1", "impedance", "10 kV"),
+        ("t1", "impedance", "400 %"),
+        ("board", "length", "long"),
+    ],
 )
 def test_what_cannot_be_taken_is_refused_in_words(name: str, key: str, text: str) -> None:
     plant, ids = pump_house()
@@ -144,7 +149,11 @@ def test_typing_anew_keeps_the_mark_unless_it_was_typical() -> None:
     plant, ids = pump_house()
     t1 = ids["t1"]
     row = rows_of(plant.parts[t1])["impedance"]
-    for before, after in ((Basis.LETTER, Basis.LETTER), (Basis.GUESSED, Basis.GUESSED), (Basis.TYPICAL, Basis.NAMEPLATE)):
+    for before, after in (
+        (Basis.LETTER, Basis.LETTER),
+        (Basis.GUESSED, Basis.GUESSED),
+        (Basis.TYPICAL, Basis.NAMEPLATE),
+    ):
         marked = plant.parts[t1].with_text("impedance", "9 %", before)
         with_mark = replace(plant, parts={**plant.parts, t1: marked})
         assert edited(with_mark, (t1,), row, "11 %").parts[t1].basis_of("impedance") is after

@@ -44,9 +44,7 @@ def test_a_click_and_the_keyboard_take_a_part(shelf: Shelf) -> None:
     assert names == ["Bus", "Supply", "Supply"]
 
 
-def test_moving_far_with_the_button_down_is_a_drag_and_no_click(
-    shelf: Shelf, monkeypatch: pytest.MonkeyPatch
-) -> None:
+def test_moving_far_with_the_button_down_is_a_drag_and_no_click(shelf: Shelf, monkeypatch: pytest.MonkeyPatch) -> None:
     dragged: list[str] = []
     monkeypatch.setattr(PartTile, "start_drag", lambda self: dragged.append(self.offer.name))
     names, cable = taken(shelf), tile(shelf, "Cable")

@@ -104,5 +104,3 @@ def test_everything_fits_the_width_of_a_small_screen(top: tuple[Session, TopLine
         assert not any(a.intersects(b) for b in rects[i + 1 :])
     hints = [w for w in buttons if w.isVisible() and w.width() < w.fontMetrics().horizontalAdvance(w.text())]
     assert hints == []  # no word is cut
-
-

@@ -10,9 +10,7 @@ from onelinefault.model.plant import Plant
 def two_transformers() -> Plant:
     plant = Plant()
     for x, power in ((10, "1.6 MVA"), (40, "630 kVA")):
-        edit = place(
-            plant, "transformer", "s1", x, 10, rated_power=power, high_voltage="11 kV", low_voltage="420 V"
-        )
+        edit = place(plant, "transformer", "s1", x, 10, rated_power=power, high_voltage="11 kV", low_voltage="420 V")
         plant = apply(plant, edit)
     return plant
 

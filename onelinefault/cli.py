@@ -164,7 +164,7 @@ def _open(arguments: argparse.Namespace) -> int:
         except ImportError as error:
             trouble = qt_trouble(error)
         else:
-            return int(run(path))
+            return run(arguments.file)
     if path is None:
         return _refuse(f"{trouble}; name a plant file to print its bus table, or see onelinefault --help")
     return _print_and_draw(path, arguments, trouble)

@@ -33,6 +33,7 @@ GESTURES: Final = (
     ("Wheel", "zooms at the pointer; with Shift it scrolls sideways"),
     ("Middle button, or Space and drag", "pans"),
     ("Arrow keys", "nudge the selection by a module; with Shift by five"),
+    ("Enter on the sheet", "goes to the ratings of the selected part; Escape comes back"),
     ("Escape", "leaves what is under way, then clears the fault, then the selection"),
     ("Ctrl+B in a field", "says how the value is known"),
 )

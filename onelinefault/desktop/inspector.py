@@ -4,12 +4,20 @@ from __future__ import annotations
 
 from typing import TYPE_CHECKING, Final
 
-from PySide6.QtCore import QTimer, Signal
+from PySide6.QtCore import Qt, QTimer, Signal
 from PySide6.QtWidgets import QHBoxLayout, QLabel, QPushButton, QScrollArea, QStackedWidget, QVBoxLayout, QWidget
 
 from onelinefault.desktop.basis_legend import BasisLegend
 from onelinefault.desktop.inspector_rows import Row, row_widget
-from onelinefault.desktop.inspector_state import RowState, document_rows, heading, part_rows, row_edit, sheet_rows
+from onelinefault.desktop.inspector_state import (
+    RATING,
+    RowState,
+    document_rows,
+    heading,
+    part_rows,
+    row_edit,
+    sheet_rows,
+)
 from onelinefault.desktop.typical_values import completed_parts, fill_in, offered
 from onelinefault.errors import OneLineFaultError
 from onelinefault.model.editing import set_basis
@@ -87,7 +95,7 @@ class Inspector(QWidget):
         scroll = QScrollArea()
         scroll.setWidgetResizable(True)
         scroll.setWidget(self._stack)
-        scroll.setFocusPolicy(scroll.focusPolicy().NoFocus)
+        scroll.setFocusPolicy(Qt.FocusPolicy.NoFocus)
         self._scroll = scroll
         whole = QVBoxLayout(self)
         whole.setContentsMargins(0, 0, 0, 0)
@@ -142,6 +150,17 @@ class Inspector(QWidget):
                 return row
         raise KeyError(key)
 
+    def take_keyboard(self) -> bool:
+        """Put the cursor into the first row that lacks something, else the first rating; whether there was one."""
+        self.refresh()
+        rows = self.page.rows if self.page is not None else []
+        ratings = [row for row in rows if row.state.scope == RATING] or rows
+        for row in [*(row for row in ratings if row.state.missing), *ratings]:
+            row.editor.setFocus(Qt.FocusReason.TabFocusReason)
+            self._scroll.ensureWidgetVisible(row)
+            return True
+        return False
+
     def enter(self, row: Row, text: str, left: bool) -> None:
         """Take a typed text; a refused one is told under its row, and the old value stays."""
         state = row.state
@@ -188,7 +207,7 @@ class Inspector(QWidget):
         return self.tr("Wire"), " – ".join(names)
 
     def _show(self, states: list[RowState]) -> None:
-        self.legend.setVisible(any(state.scope == "rating" for state in states))
+        self.legend.setVisible(any(state.scope == RATING for state in states))
         if not states:
             self._empty.setText(self.tr("A wire has no ratings. Drag one of its pieces to set its corners."))
             self._stack.setCurrentWidget(self._empty)

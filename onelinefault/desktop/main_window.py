@@ -180,14 +180,18 @@ class MainWindow(QMainWindow):
     # the window's own events
 
     def keyPressEvent(self, event: QKeyEvent) -> None:
-        """Keys that nobody below has taken: Escape, and arrows while the sheet has the keyboard."""
-        key = Qt.Key(event.key())
-        if key == Qt.Key.Key_Escape:
+        """Keys that nobody below has taken: Escape, and on the sheet arrows and Enter."""
+        key, on_sheet = Qt.Key(event.key()), self.canvas.view.hasFocus()
+        if key == Qt.Key.Key_Escape and not on_sheet:
+            self.canvas.view.setFocus()
+        elif key == Qt.Key.Key_Escape:
             self.canvas.escape()
-        elif key in _ARROWS and self.canvas.view.hasFocus():
+        elif key in _ARROWS and on_sheet:
             steps = _FAR if event.modifiers() & Qt.KeyboardModifier.ShiftModifier else 1
             dx, dy = _ARROWS[key]
             self._edit_commands.nudge(dx * steps, dy * steps)
+        elif key in (Qt.Key.Key_Return, Qt.Key.Key_Enter) and on_sheet:
+            self.panels.inspector.take_keyboard()
         else:
             super().keyPressEvent(event)
 

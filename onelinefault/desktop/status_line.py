@@ -64,7 +64,7 @@ class StatusLine(QStatusBar):
             return (answer.trouble,)
         errors = sum(finding.severity is Severity.ERROR for finding in answer.findings)
         words = [self.tr("solved in {0} ms").format(max(round(answer.milliseconds), 1))]
-        words.append(self.tr("{0} nodes").format(answer.nodes))
+        words.append(self.tr("1 node") if answer.nodes == 1 else self.tr("{0} nodes").format(answer.nodes))
         if errors:
             words.append(self.tr("1 error") if errors == 1 else self.tr("{0} errors").format(errors))
         return tuple(words)

@@ -57,12 +57,11 @@ class Outputs:
         return BusTable(self.plant, self.case, rows, self.findings, self.arrangement)
 
     def largest(self, table: BusTable) -> FaultResult | None:
-        """The fault of a bus table with the largest current; None when nothing feeds a fault."""
-        fed = [row for row in table.rows if row.ik_ka > 0]
+        """The three-phase fault at the bus of a table where it is largest; None when nothing feeds one."""
+        fed = [row for row in table.rows if row.ik_ka > 0 and row.kind == FaultKind.THREE_PHASE]
         if not fed:
             return None
-        row = max(fed, key=lambda row: row.ik_ka)
-        return self.study.fault(Fault(Place(row.part), FaultKind(row.kind)))
+        return self.study.fault(Fault(Place(max(fed, key=lambda row: row.ik_ka).part)))
 
     def draw(
         self,

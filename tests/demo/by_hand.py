@@ -136,7 +136,7 @@ def quarry() -> dict[tuple[str, str], float]:
     swgr_a_zero = of_ratio(2.4, 8) + 3 * 4.16 / math.sqrt(3) / 0.200
     feeding, feeding_negative = (beside(through_t1, z) + w13 for z in (crusher, crusher_negative))
     mcc_1, mcc_1_negative = (beside(z / (4.16 / 0.48) ** 2 + tl1, motors_1) for z in (feeding, feeding_negative))
-    # the pit: Z2 of all this differs from Z1 only through the crusher, by far away; earth over T2's 50 A resistor and L2
+    # the pit: its Z2 differs from Z1 through the crusher alone, from far away; earth over T2's 50 A resistor and L2
     through_t2, through_t2_negative = (
         beside(utility, (t1 + z) * ratio**2) / ratio**2 + t2 for z in (side_a, side_a_negative)
     )
@@ -205,6 +205,6 @@ def pit_line_ohm() -> tuple[complex, complex]:
             own = r[i] * to_20 if i == j else 0.0
             z[i, j] = own + 0.09530 + 0.12134j * (math.log(1 / apart) + 7.6786 + 0.5 * math.log(400 / 60))
     phases = z[:3, :3] - np.outer(z[:3, 3], z[3, :3]) / z[3, 3]  # the neutral is earthed along the line
-    own, mutual = complex(phases.trace()) / 3, complex(phases.sum() - phases.trace()) / 6
+    alone, mutual = complex(phases.trace()) / 3, complex(phases.sum() - phases.trace()) / 6
     miles = 3200 / 5280
-    return (own - mutual) * miles, (own + 2 * mutual) * miles
+    return (alone - mutual) * miles, (alone + 2 * mutual) * miles

@@ -123,7 +123,23 @@ def test_no_current_flows_to_earth_where_there_is_no_neutral() -> None:
     assert two == pytest.approx(rows["Pumps", "line-to-line"].ik_ka, rel=1e-12)
 
 
-def test_what_the_notes_say_of_the_ties_is_so() -> None:
+@pytest.mark.parametrize("name", NAMES)
+def test_the_readme_shows_the_filed_figures(name: str) -> None:
+    states = [a.name for a in plant_of(name).arrangements]
+    rows = {(r["arrangement"], r["bus"], r["kind"]): r for r in filed(name) if r["level"] == "max"}
+    lines = (FOLDERS[NAMES.index(name)] / "README.md").read_text(encoding="utf-8").splitlines()
+    shown = {
+        cells[1]: cells[2:-1] for cells in ([c.strip() for c in line.split("|")] for line in lines) if len(cells) == 10
+    }
+    for bus in buses_of(plant_of(name)):
+        wanted = [rows[states[0], bus.name, kind.value]["ik_ka"] for kind in FaultKind]
+        wanted.append(rows[states[0], bus.name, "three-phase"]["peak_ka"])
+        wanted += [rows[state, bus.name, "three-phase"]["ik_ka"] for state in states[1:]]
+        for text, value in zip(shown[bus.name], wanted, strict=True):
+            assert float(text) == pytest.approx(value, rel=5e-3, abs=1e-9), bus.name
+
+
+def test_what_the_readmes_say_of_the_ties_is_so() -> None:
     # with the tie closed the boards would see more than the 16 kA and 25 kA that their busbars withstand
     for name, tie, bus, withstand_ka in (
         ("lindermoor_mill", "11 kV tie closed", "Board A", 16),
@@ -178,7 +194,7 @@ def _compare(name: str, arrangement: str | None, kind: FaultKind) -> None:
 
 
 def test_the_winder_adds_its_limit_at_a_bus_without_voltage() -> None:
-    # law: into a dead short the drive feeds 1.5 times its rated current, lagging by a quarter period; the rest is linear
+    # law: into a dead short the drive feeds 1.5 times its rated current, a quarter period behind; the rest is linear
     with_it = found("lindermoor_mill", None, "max")["MCC 2", "three-phase"]
     without = study_of(known_to_the_oracle(plant_of("lindermoor_mill")), Case()).all_buses((FaultKind.THREE_PHASE,))
     row = next(row for row in without if row.bus == "MCC 2")

@@ -178,16 +178,17 @@ def test_a_pin_in_the_middle_of_a_bus_hides_nothing(name: str, sheet_id: str) ->
             assert lying_on(here, others + words(picture) + above) == [], bus.name
 
 
+@pytest.mark.parametrize("detail", [2, 3])
 @pytest.mark.parametrize("kind", FaultKind)
 @pytest.mark.parametrize("name", PLANTS)
-def test_tags_find_free_places_for_every_bus(name: str, kind: FaultKind) -> None:
+def test_tags_find_free_places_for_every_bus(name: str, kind: FaultKind, detail: int) -> None:
     plant = PLANTS[name]
     study = study_of(plant, Case())
     pictures = [sheet_picture(plant, sheet.id, roles_of(study.network)) for sheet in plant.sheets]
     for bus in [part for part in plant.parts.values() if isinstance(part, Bus)]:
         result = study.fault(Fault(Place(bus.id), kind))
         for picture in pictures:
-            data = overlay_data(plant, result, 2)
+            data = overlay_data(plant, result, detail)
             tags = [*overlay_picture(plant, picture, data).boxes.items()]
             assert lying_on(tags, bodies(picture) + words(picture) + links(picture)) == [], bus.name
             assert [pair for pair in combinations(tags, 2) if pair[0][1].overlaps(pair[1][1])] == [], bus.name

@@ -27,7 +27,8 @@ loaded = sorted(sys.modules)
 dressed = bool(app.styleSheet()) and app.findChild(Style) is not None
 visible = window.isVisible()
 window.close()
-print(json.dumps({"loaded": loaded, "dressed": dressed, "visible": visible, "left": [p.name for p in folder.iterdir()]}))
+left = [p.name for p in folder.iterdir()]
+print(json.dumps({"loaded": loaded, "dressed": dressed, "visible": visible, "left": left}))
 """
 HEAVY = ("numpy", "scipy", "matplotlib", "networkx", "PySide6.QtPrintSupport", "PySide6.QtSvg", "asyncio", "unittest")
 

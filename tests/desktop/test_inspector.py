@@ -9,7 +9,7 @@ from PySide6.QtTest import QTest
 from pytestqt.qtbot import QtBot
 
 from onelinefault.desktop.inspector import Inspector
-from onelinefault.desktop.inspector_rows import FlagRow, LineRow
+from onelinefault.desktop.inspector_rows import EntryLine, FlagRow, LineRow
 from onelinefault.desktop.session import Session
 from onelinefault.drawing.painter import load_fonts
 from onelinefault.model.editing import place
@@ -199,6 +199,20 @@ def test_a_wire_is_told_by_its_ends(bench: Bench) -> None:
     bench.inspector.refresh()
     assert bench.titles[-1] == ("Wire", "W1 – Pumps")
     assert bench.inspector.page is None
+
+
+def test_the_keyboard_goes_to_the_first_thing_missing(bench: Bench, monkeypatch: pytest.MonkeyPatch) -> None:
+    taken: list[str] = []
+    monkeypatch.setattr(EntryLine, "setFocus", lambda self, reason: taken.append(self.accessibleName()))
+    bench.select("t1")
+    assert bench.inspector.take_keyboard()
+    row = bench.line("low_voltage")
+    row.line.clear()
+    QTest.keyClick(row.line, Qt.Key.Key_Return)
+    assert bench.inspector.take_keyboard()
+    assert taken == ["Rated power", "Rated voltage, low, required"]
+    bench.session.select(frozenset({bench.ids["to_pumps"]}))
+    assert not bench.inspector.take_keyboard()
 
 
 def test_switching_back_and_forth_uses_the_same_rows(bench: Bench) -> None:

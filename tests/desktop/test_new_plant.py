@@ -6,6 +6,6 @@ from onelinefault.desktop.settings import METRIC, US
 
 def test_metric_and_us() -> None:
     metric, us = new_plant(METRIC), new_plant(US)
-    assert (metric.document.frequency_hz, metric.sheets[0].paper) == (50, "A3")
-    assert (us.document.frequency_hz, us.sheets[0].paper) == (60, "ANSI B")
+    assert (metric.document.frequency_hz, metric.sheets[0].paper) == (50, "A4")
+    assert (us.document.frequency_hz, us.sheets[0].paper) == (60, "ANSI A")
     assert metric.parts == us.parts == {}

@@ -249,10 +249,11 @@ class _Task:
         machines = [part for part in self.parts if isinstance(part, MACHINES)]
         driving = [part for part in machines if not isinstance(part, MOTORS)] or machines
         emf = {part.id: self._emf(part, ideal) for part in driving}
-        build = self.built(emf)
-        before = _Before(build.solved(), build)
-        found = {part.id: _potentials(before.x, build.node((part.id, part.terminals[0].name))) for part in machines}
-        return before, found | emf
+        whole = _Task(self.wiring, self.case, None, self.start).built(emf)  # the line is cut only by the fault
+        x = whole.solved()
+        found = {part.id: _potentials(x, whole.node((part.id, part.terminals[0].name))) for part in machines}
+        build = self.built(found | emf)
+        return _Before(build.solved(), build), found | emf
 
     def _emf(self, part: Part, ideal: _Before) -> ComplexArray:
         key = (part.id, part.terminals[0].name)

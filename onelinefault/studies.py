@@ -51,7 +51,7 @@ def all_findings(plant: Plant, case: Case, arrangement: str | None = None, study
 def in_order(findings: Iterable[Finding]) -> list[Finding]:
     """Findings once each, errors before warnings before hints, otherwise in the order given.
 
-    The same remark about a field (code, parts and field) from two places, in other words, is given once, as it came first.
+    The same remark about a field (code, parts and field) from two places is given once, in the words that came first.
     """
     first: dict[object, Finding] = {}
     for finding in findings:

@@ -144,12 +144,16 @@ def finding_rows(findings: Sequence[Finding], plant: Plant) -> list[TableRow]:
 
 
 class TableModel(QAbstractTableModel):
-    """A table of rows. mark_column: where the severity is shown as a shape instead of a word."""
+    """A table of rows. mark_column: where the severity is shown as a shape instead of a word.
+
+    row_of: the first row that speaks of a part, by its id.
+    """
 
     def __init__(self, heads: Sequence[Head], mark_column: int = -1) -> None:
         super().__init__()
         self.heads = tuple(heads)
         self.rows: list[TableRow] = []
+        self.row_of: dict[str, int] = {}
         self.stale = False
         self._mark_column = mark_column
 
@@ -165,6 +169,7 @@ class TableModel(QAbstractTableModel):
             return
         self.beginResetModel()
         self.rows = rows
+        self.row_of = {part: row for row in reversed(range(len(rows))) for part in rows[row].parts}
         self.endResetModel()
 
     def show_stale(self) -> None:
@@ -242,7 +247,8 @@ class SortedTable(QSortFilterProxyModel):
 
     def row_of(self, part: str) -> int:
         """The shown row of a part, or -1."""
-        return next((row for row in range(self.rowCount()) if part in self.parts_at(row)), -1)
+        row = self.table.row_of.get(part)
+        return -1 if row is None else self.mapFromSource(self.table.index(row, 0)).row()
 
     def as_text(self) -> str:
         """What is shown, as lines of cells parted by tabs, with headings and the caution."""

@@ -18,7 +18,6 @@ from onelinefault.desktop.inspector_state import (
     row_edit,
     sheet_rows,
 )
-from onelinefault.desktop.typical_values import completed_parts, fill_in, offered
 from onelinefault.errors import OneLineFaultError
 from onelinefault.model.editing import set_basis
 from onelinefault.model.fields import Basis
@@ -28,6 +27,7 @@ if TYPE_CHECKING:
     from onelinefault.model.part import Part
 
 _PAGES_KEPT: Final = 24
+_MOST_COMPLETED: Final = 100  # typical values of more parts at once would keep the sheet waiting
 
 
 class RowPage(QWidget):
@@ -126,12 +126,12 @@ class Inspector(QWidget):
     def refresh(self) -> None:
         """Show what is selected now."""
         parts = self._selected()
-        completed: list[Part] = []
         self._ids = tuple(part.id for part in parts)
         self._sheet = self._session.sheet_id
+        self.fill.setVisible(bool(parts) and self.fill.isVisible())
         plant = self._session.plant
         if parts:
-            completed = completed_parts(plant, parts)
+            completed = self._completed(parts)
             words, states = heading(parts), part_rows(parts, completed)
         elif self._session.selection:
             words, states = self._wire_words(), []
@@ -140,7 +140,6 @@ class Inspector(QWidget):
             words = (self.tr("Plant"), self.tr("nothing selected"))
             states = [*document_rows(plant), *(sheet_rows(sheet) if sheet else ())]
         self.titled.emit(*words)
-        self._offer_typical(parts, completed)
         self._show(states)
 
     def row(self, key: str) -> Row:
@@ -187,12 +186,22 @@ class Inspector(QWidget):
 
     def fill_typical(self) -> None:
         """Type the typical values that stand in for what is not typed, marked as typical, as one step."""
+        from onelinefault.desktop.typical_values import fill_in  # noqa: PLC0415 - see _completed
+
         self._session.apply(fill_in(self._session.plant, self._selected()))
 
-    def _offer_typical(self, parts: list[Part], completed: list[Part]) -> None:
+    def _completed(self, parts: list[Part]) -> list[Part]:
+        """The parts with typical values filled in; offers to type them where there are any."""
+        from onelinefault.desktop.typical_values import completed_parts, offered  # noqa: PLC0415 - not at the start
+
+        if len(parts) > _MOST_COMPLETED:
+            self.fill.hide()
+            return []
+        completed = completed_parts(self._session.plant, parts)
         fields = {name for part, full in zip(parts, completed, strict=True) for name in offered(part, full)}
         self.fill.setVisible(bool(fields))
         self.fill.setText(self.tr("Fill in typical values ({0})").format(len(fields)))
+        return completed
 
     def _selected(self) -> list[Part]:
         plant = self._session.plant

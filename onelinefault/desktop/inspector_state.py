@@ -25,6 +25,7 @@ from onelinefault.model.quantity import VOLTAGE, Quantity
 
 PART, RATING, DRAWN, DOCUMENT, SHEET = "part", "rating", "drawn", "document", "sheet"
 YES, NO = "yes", "no"
+_MOST_NAMES: Final = 20
 _NEUTRALS: Final = ("isolated", "solid", "resistor 400 A 10 s", "reactor 5 ohm")
 _GROUPS: Final = ("Dyn11", "Dyn1", "Dyn5", "YNd1", "YNd11", "YNyn0", "Yyn0", "Dd0", "Yzn5", "YNyn0d11", "YNa0d11")
 SUGGESTIONS: Final[Mapping[str, tuple[str, ...]]] = {"neutral": _NEUTRALS, "vector group": _GROUPS}
@@ -191,7 +192,7 @@ def heading(parts: Sequence[Part]) -> tuple[str, str]:
         return f"{part.label} {name}".strip(), voltages(part)
     labels = {part.label for part in parts}
     word = f"{next(iter(labels)).lower()}s" if len(labels) == 1 else "parts"
-    return f"{len(parts)} {word}", ", ".join(part.name for part in parts if part.name)
+    return f"{len(parts)} {word}", ", ".join(part.name for part in parts[:_MOST_NAMES] if part.name)
 
 
 def voltages(part: Part) -> str:

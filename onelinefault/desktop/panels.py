@@ -60,7 +60,8 @@ class Panels(QObject):
             "working": area.RightDockWidgetArea, "drawer": area.BottomDockWidgetArea,
         }  # fmt: skip
         for key, dock in self.docks.items():
-            dock.setFloating(False)
+            if dock.isFloating():
+                dock.setFloating(False)
             window.addDockWidget(places[key], dock)
             dock.show()
         window.splitDockWidget(self.docks["inspector"], self.docks["working"], Qt.Orientation.Vertical)

@@ -8,7 +8,11 @@ from onelinefault.model.fault import Place
 
 @dataclass(frozen=True, slots=True)
 class Flow:
-    """Current along a wire or at a terminal. ka: size; forward: from end a to b; at a terminal: into the part."""
+    """Current along a wire or at a terminal.
+
+    ka: size, referred to the faulted place's voltage, so that what arrives through transformers can be compared.
+    forward: from end a to b; at a terminal: into the part.
+    """
 
     ka: float
     forward: bool

@@ -69,6 +69,7 @@ def _taken(picture: SheetPicture) -> list[Box]:
     """What tags and gauges keep clear of: symbols, words, title block."""
     boxes = [p.body for p in picture.parts.values()]
     boxes += [shape.box() for p in picture.parts.values() for shape in p.words]
+    boxes += [w.link for w in picture.wires.values() if w.link is not None]
     return [*boxes, title_block_box(picture.sheet)]
 
 
@@ -92,7 +93,7 @@ def _gauge(plant: Plant, bus_id: str, percent: float, taken: list[Box], picture:
     for centre, right in places:
         box = _gauge_box(centre, right, label)
         inside = frame.left <= box.left and box.right <= frame.right
-        if inside and not any(box.overlaps(other) for other in taken):
+        if inside and not any(box.overlaps(other) for other in taken) and not _crossed(box, picture):
             break
     else:
         centre, right = places[0]
@@ -103,6 +104,17 @@ def _gauge(plant: Plant, bus_id: str, percent: float, taken: list[Box], picture:
         text = Text(-half - 5, 0, f"{percent:.0f} %", 11, "bold", "end", "middle", "gauge")
         shapes = (*(s for s in shapes if not isinstance(s, Text)), text)
     return transform(shapes, dx=centre[0], dy=centre[1]), box
+
+
+def _crossed(box: Box, picture: SheetPicture) -> bool:
+    """Whether a wire runs through a box."""
+    for wire in picture.wires.values():
+        if wire.box.overlaps(box):
+            for (ax, ay), (bx, by) in segments(wire.path):
+                piece = Box(min(ax, bx), min(ay, by), max(ax, bx), max(ay, by))
+                if Box(*(v * MODULE_DU for v in piece)).grown(1).overlaps(box):
+                    return True
+    return False
 
 
 def _gauge_box(centre: Point, right: bool, label: float) -> Box:

@@ -16,6 +16,7 @@ _FRAME = Stroke("frame", 2.4)
 _RULE = Stroke("frame", 1.2)
 _BLOCK_W, _BLOCK_H = 330.0, 66.0
 _SPLIT = 205.0
+_RIBBON_WORDS = "fault current at the fault's voltage, wider = more"
 _LEVELS = (("level-hv", "above 36 kV"), ("level-mv", "1 to 36 kV"), ("level-lv", "up to 1 kV"), ("dead", "dead"))
 
 
@@ -148,8 +149,8 @@ def _legend(sheet: Sheet, *, with_overlay: bool) -> list[Shape]:
         x += 29 + text_width(words, 8.5) + 16
     if with_overlay:
         shapes.append(Rect(x, y - 4, 26, 8, 0, None, "ribbon"))
-        shapes.append(_word(x + 32, y, "fault current, wider = more"))
-        x += 32 + text_width("fault current, wider = more", 8.5) + 16
+        shapes.append(_word(x + 32, y, _RIBBON_WORDS))
+        x += 32 + text_width(_RIBBON_WORDS, 8.5) + 16
         shapes.append(Rect(x, y - 7, 6, 14, 3, Stroke("gauge", 1.2), "paper"))
         shapes.append(Rect(x + 1.6, y - 1, 2.8, 6.4, 1.4, None, "gauge"))
         shapes.append(_word(x + 13, y, "voltage left"))

@@ -11,7 +11,7 @@ from onelinefault.model.consumers import Bus, Note
 from onelinefault.model.figures import voltage_text
 from onelinefault.model.part import Part, place_of
 from onelinefault.model.quantity import Quantity
-from onelinefault.model.sources import InductionMotor
+from onelinefault.model.sources import InductionMotor, SynchronousGenerator, SynchronousMotor
 from onelinefault.model.summary import rating_lines
 from onelinefault.model.switching import Breaker, Fuse, Switch
 from onelinefault.model.transforming import Autotransformer, EarthingTransformer, Transformer, Transformer3
@@ -87,9 +87,17 @@ def _parallel(part: Part) -> int:
 
 
 def _neutrals(part: Part) -> tuple[str, ...]:
+    """How each winding's star point is treated; a delta has none."""
     names = [name for name in _NEUTRAL_FIELDS if hasattr(part, name)]
     found = [part.value(name) for name in names]
-    return tuple(value.form if isinstance(value, Neutral) else "" for value in found)
+    if len(names) > 1:
+        deltas = [c == "D" for c in _connections(part)]
+    else:
+        deltas = [hasattr(part, "connection") and part.value("connection") == "delta"]
+    return tuple(
+        value.form if isinstance(value, Neutral) and not delta else ""
+        for value, delta in zip(found, [*deltas, *[False] * len(found)], strict=False)
+    )
 
 
 def _connections(part: Part) -> tuple[str, ...]:
@@ -143,7 +151,8 @@ def _beside(part: Part, lines: list[tuple[str, bool]], body: Box) -> Shapes:
     else:
         left = isinstance(part, _LABEL_LEFT) != part.mirrored
         x, anchor = (body.left - 7, "end") if left else (body.right + 7, "start")
-        first = (body.top + body.bottom) / 2 - (len(lines) - 1) / 2 * _LINE_DU + 4
+        middle_y = part.y * MODULE_DU if _hangs_a_neutral(part) else (body.top + body.bottom) / 2
+        first = middle_y - (len(lines) - 1) / 2 * _LINE_DU + (0 if _hangs_a_neutral(part) else 4)
         if left and isinstance(part, (Transformer, Transformer3)):
             x = min(x, part.x * MODULE_DU - 26)
     return tuple(
@@ -156,6 +165,12 @@ def _beside(part: Part, lines: list[tuple[str, bool]], body: Box) -> Shapes:
     )  # fmt: skip
 
 
+def _hangs_a_neutral(part: Part) -> bool:
+    """Whether a neutral with its size hangs below the symbol, so that the words keep above it."""
+    value = part.value("neutral") if hasattr(part, "neutral") else None
+    return isinstance(value, Neutral) and value.earthed and not isinstance(part, Autotransformer)
+
+
 def _neutral_words(part: Part) -> Shapes:
     """The size of an earthing resistor or reactor beside its sign."""
     places = {"neutral_high": (-33.0, -2.0), "neutral_low": (33.0, 28.0), "neutral": (12.0, 34.0)}
@@ -166,7 +181,8 @@ def _neutral_words(part: Part) -> Shapes:
     words = []
     for name, (dx, dy) in places.items():
         value = part.value(name) if hasattr(part, name) else None
-        if isinstance(value, Neutral) and value.size is not None and isinstance(part, _WITH_SIGN):
+        shown = isinstance(part, _WITH_SIGN) and any(_neutrals(part))
+        if isinstance(value, Neutral) and value.size is not None and shown:
             x, y = place_of(part, dx / MODULE_DU, dy / MODULE_DU)
             right = x >= part.x
             text = value.size.text
@@ -176,4 +192,7 @@ def _neutral_words(part: Part) -> Shapes:
     return tuple(words)
 
 
-_WITH_SIGN = (Transformer, Transformer3, Autotransformer, EarthingTransformer)
+_WITH_SIGN = (
+    Transformer, Transformer3, Autotransformer, EarthingTransformer,
+    SynchronousGenerator, SynchronousMotor, InductionMotor,
+)  # fmt: skip

@@ -26,12 +26,13 @@ ZONE_MODULES = 20  # a zone of the border grid: 50 mm (ISO 5457)
 
 @dataclass(frozen=True, slots=True)
 class WirePicture:
-    """A wire on one sheet. path: its corners in modules from end a to end b; shapes in du."""
+    """A wire on one sheet. path: its corners in modules from end a to end b; shapes in du; link: its tag's box."""
 
     wire: str
     path: tuple[Point, ...]
     shapes: Shapes
     box: Box
+    link: Box | None = None
 
 
 def directions(part: Part, terminal: Terminal) -> tuple[Dir, ...]:
@@ -136,8 +137,8 @@ def wire_picture(plant: Plant, wire: Wire, sheet: Sheet, obstacles: Obstacles, r
         shapes: Shapes = (Polyline(_in_du(path), Stroke(role, WIRE_DU)),)
         return WirePicture(wire.id, path, shapes, bounds(shapes))
     here, there = (wire.a, wire.b) if a.sheet == sheet.id else (wire.b, wire.a)
-    path, shapes = _link(plant, here, there, role)
-    return WirePicture(wire.id, path, shapes, bounds(shapes))
+    path, line, tag = _link(plant, here, there, role)
+    return WirePicture(wire.id, path, (*line, *tag), bounds((*line, *tag)), bounds(tag))
 
 
 def zone(sheet: Sheet, x: float, y: float) -> str:
@@ -146,7 +147,7 @@ def zone(sheet: Sheet, x: float, y: float) -> str:
     return f"{chr(ord('A') + max(0, int(y // ZONE_MODULES)))}{int(x // ZONE_MODULES) + 1}"
 
 
-def _link(plant: Plant, here: End, there: End, role: str) -> tuple[tuple[Point, ...], Shapes]:
+def _link(plant: Plant, here: End, there: End, role: str) -> tuple[tuple[Point, ...], Shapes, Shapes]:
     part, other = plant.parts[here.part], plant.parts[there.part]
     start = _place(plant, here)
     way = directions(part, terminal_of(part, here.terminal))
@@ -159,7 +160,7 @@ def _link(plant: Plant, here: End, there: End, role: str) -> tuple[tuple[Point, 
     turn = {S: 0, W: 1, N: 2, E: 3}[(dx, dy)]
     tag = transform(sheet_link(text, role), turn, dx=end[0] * MODULE_DU, dy=end[1] * MODULE_DU)
     tag = transform(tag, dx=20.0 * dx, dy=20.0 * dy)
-    return (start, end), (Polyline(_in_du((start, end)), Stroke(role, WIRE_DU)), *tag)
+    return (start, end), (Polyline(_in_du((start, end)), Stroke(role, WIRE_DU)),), tag
 
 
 def _place(plant: Plant, end: End) -> Point:

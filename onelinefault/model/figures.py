@@ -8,7 +8,7 @@ def figure(value: float, digits: int = 3) -> str:
     """A number with so many significant digits, never in powers of ten between 0.001 and 100 000.
 
     >>> figure(12.936), figure(0.40251), figure(1590.4), figure(-0.5)
-    ('12.9', '0.403', '1590', '−0.5')
+    ('12.9', '0.403', '1590', '−0.500')
     """
     if not math.isfinite(value):
         return "∞" if value > 0 else "–"
@@ -18,8 +18,6 @@ def figure(value: float, digits: int = 3) -> str:
     if not -4 <= size < 6:
         return f"{value:.{digits - 1}e}".replace("-", "−")
     text = f"{value:.{max(digits - 1 - size, 0)}f}"
-    if "." in text and abs(value) < 1:
-        text = text.rstrip("0")
     return text.replace("-", "−")
 
 

@@ -14,11 +14,12 @@ from onelinefault.model.part import Part
 from onelinefault.model.plant import Wire
 from onelinefault.model.quantity import Quantity
 
-COLUMN: Final = 14  # modules; room for a symbol and the words beside it
+COLUMN: Final = 16  # modules; room for a symbol and the words beside it
 _HALF: Final = COLUMN // 2
 _ROW_GAP: Final = 4
 _LEAST_BAR: Final = 12
-_BAR_END: Final = 4  # modules of bar beyond its outermost feeder
+_BAR_LEFT: Final = 10  # modules of bar left of its first feeder: its name stands there
+_BAR_RIGHT: Final = 4
 _TIE_DROP: Final = 4  # modules that a tie hangs below its buses
 _TIE_REACH: Final = 5  # modules from a tie's middle to the ends of the bars it joins
 
@@ -265,9 +266,7 @@ def _bar(node: _Node, columns: Mapping[str, int], nodes: Mapping[str, _Node], y:
     reach = [columns[key] for key in node.children if _under_or_over(nodes[key], node)]
     if not reach or (node.parent is not None and not nodes[node.parent].tie):
         reach.append(columns[node.part.id])  # where it is fed
-    left, right = min(reach) - _BAR_END, max(reach) + _BAR_END
-    spare = max(0, _LEAST_BAR - (right - left))
-    left, right = left - spare // 2, right + spare - spare // 2
+    left, right = min(reach) - _BAR_LEFT, max(reach) + _BAR_RIGHT
     if node.parent is not None and nodes[node.parent].tie:
         left = columns[node.parent] + _TIE_REACH
     ties = [key for key in node.children if nodes[key].tie]

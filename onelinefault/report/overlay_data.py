@@ -18,6 +18,7 @@ KIND_WORDS: Final[dict[FaultKind, str]] = {
 }
 METHOD_WORDS: Final = {"classical": "classical method"}
 LEVEL_WORDS: Final = {"max": "largest", "min": "smallest"}
+_NOISE: Final = 1e-4  # phases and sequences below this share of the largest are rounding, or nobody's concern
 _LEAST_SHARE: Final = 0.005  # flows below this share of the largest are not drawn
 
 
@@ -77,7 +78,7 @@ def fault_words(plant: Plant, result: FaultResult) -> str:
 
 
 def _flow(phases_ka: ComplexArray, node: int, result: FaultResult) -> Flow | None:
-    size = float(max(abs(phases_ka)))
+    size = float(max(abs(phases_ka))) * result.network.nodes[node].nominal_kv / result.nominal_kv
     if size <= _LEAST_SHARE * max(result.ik_ka, 1e-12):
         return None
     return Flow(size, _runs_as_counted(phases_ka, node, result))
@@ -111,23 +112,25 @@ def _fault_tag(result: FaultResult, detail: int) -> Tag:
     if detail >= 2:
         lines.append(f"peak {current_text(result.peak_ka)}  X/R {figure(result.x_over_r)}")
     if detail >= 3:
-        lines += _phase_lines(result.phases_ka) + _sequence_lines(result)
+        lines += _phase_lines(result.phases_ka, result.ik_ka) + _sequence_lines(result)
     return Tag("fault", current_text(result.ik_ka), tuple(lines), filled=True)
 
 
-def _phase_lines(phases_ka: ComplexArray) -> list[str]:
+def _phase_lines(phases_ka: ComplexArray, largest_ka: float) -> list[str]:
     return [
         f"{name} {current_text(abs(value))} {angle_text(value)}"
         for name, value in zip("abc", (complex(v) for v in phases_ka), strict=True)
-        if abs(value) > 1e-6
+        if abs(value) > _NOISE * largest_ka
     ]
 
 
 def _sequence_lines(result: FaultResult) -> list[str]:
-    names = ("I1", "I2", "I0")
+    names, least = ("I1", "I2", "I0"), _NOISE * result.ik_ka
     values = [complex(v) for v in result.sequence_ka]
-    lines = [f"{n} {current_text(abs(v))} {angle_text(v)}" for n, v in zip(names, values, strict=True) if abs(v) > 1e-6]
-    if abs(result.residual_ka) > 1e-6:
+    lines = [
+        f"{n} {current_text(abs(v))} {angle_text(v)}" for n, v in zip(names, values, strict=True) if abs(v) > least
+    ]
+    if abs(result.residual_ka) > least:
         lines.append(f"3I0 {current_text(abs(result.residual_ka))}")
     return lines
 
@@ -142,7 +145,7 @@ def _flow_tags(plant: Plant, result: FaultResult, detail: int) -> list[Tag]:
         strongest = complex(towards[strongest_phase(towards)])
         lines = [f"{angle_text(strongest)} {plant.parts[part_id].name}".strip()]
         if detail >= 3:
-            lines += _phase_lines(towards)
+            lines += _phase_lines(towards, abs(strongest))
         tags.append(Tag(f"{part_id} {terminal}", current_text(abs(strongest)), tuple(lines)))
     return tags
 
@@ -160,7 +163,8 @@ def _feeders(plant: Plant, result: FaultResult) -> list[tuple[tuple[str, str], i
         if part is None or node is None or hasattr(part, "closed") or part.kind == "bus":
             continue
         size = float(max(abs(ka)))
-        if size > max(_LEAST_SHARE * result.ik_ka, 1e-5) and (node == result.node or part.id in sources):
+        referred = size * result.network.nodes[node].nominal_kv / result.nominal_kv
+        if referred > max(_LEAST_SHARE * result.ik_ka, 1e-5) and (node == result.node or part.id in sources):
             found.append((key, node, ka))
             if node == result.node:
                 arriving.add(_mark(size, node, result))

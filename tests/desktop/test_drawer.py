@@ -55,12 +55,19 @@ def test_a_fault_alone_does_not_open_it_an_error_does(bench: Bench, qtbot: QtBot
     assert bench.drawer.table is bench.drawer.findings
 
 
+def test_a_closed_drawer_is_filled_when_it_is_opened(bench: Bench) -> None:
+    assert bench.drawer.buses.sorted.rowCount() == 0
+    bench.drawer.set_open(True)
+    assert bench.drawer.buses.sorted.rowCount() == 2
+
+
 def test_a_part_just_placed_is_no_reason_to_open(bench: Bench, qtbot: QtBot) -> None:
     bench.session.set_fault(Fault(Place(bench.ids["board"])))
     wait_solved(qtbot, bench.solver)
     bench.session.apply(place(bench.session.plant, "transformer", "s1", 80, 20))
     wait_solved(qtbot, bench.solver)
-    assert bench.drawer.findings.sorted.rowCount() > 0
+    assert bench.solver.answer is not None
+    assert any(finding.severity == "error" for finding in bench.solver.answer.findings)
     assert not bench.drawer.is_open
 
 
@@ -71,6 +78,7 @@ def test_without_a_fault_errors_only_count(bench: Bench, qtbot: QtBot) -> None:
 
 
 def test_old_figures_are_greyed_until_new_ones_come(bench: Bench, qtbot: QtBot) -> None:
+    bench.drawer.set_open(True)
     bench.session.apply(set_text(bench.session.plant, [bench.ids["t1"]], "impedance", "12 %"))
     assert bench.drawer.buses.sorted.table.stale
     wait_solved(qtbot, bench.solver)
@@ -78,6 +86,7 @@ def test_old_figures_are_greyed_until_new_ones_come(bench: Bench, qtbot: QtBot) 
 
 
 def test_sheet_and_table_follow_each_other_without_echo(bench: Bench) -> None:
+    bench.drawer.set_open(True)
     picked: list[tuple[str, ...]] = []
     bench.drawer.picked.connect(picked.append)
     table = bench.drawer.buses
@@ -92,6 +101,7 @@ def test_sheet_and_table_follow_each_other_without_echo(bench: Bench) -> None:
 
 
 def test_headings_follow_the_kind_and_left_voltage_a_fault(bench: Bench, qtbot: QtBot) -> None:
+    bench.drawer.set_open(True)
     model = bench.drawer.buses.sorted.table
     bench.session.choose(kind=FaultKind.LINE_TO_EARTH)
     bench.session.set_fault(Fault(Place(bench.ids["board"]), FaultKind.LINE_TO_EARTH))

@@ -215,6 +215,13 @@ def test_the_keyboard_goes_to_the_first_thing_missing(bench: Bench, monkeypatch:
     assert not bench.inspector.take_keyboard()
 
 
+def test_names_that_look_like_markup_stay_plain_words(bench: Bench) -> None:
+    bench.select("t1")
+    row = bench.type("rated_power", "<b>20</b>")
+    assert "<b>20</b>" in row.trouble.text()
+    assert row.trouble.textFormat() == Qt.TextFormat.PlainText
+
+
 def test_switching_back_and_forth_uses_the_same_rows(bench: Bench) -> None:
     bench.select("t1")
     first = bench.line("impedance")

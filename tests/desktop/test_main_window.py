@@ -115,6 +115,7 @@ def test_find_turns_to_the_sheet_of_the_part(window: MainWindow) -> None:
 def test_a_row_of_the_drawer_selects_and_centres_its_part(window: MainWindow, qtbot: QtBot) -> None:
     window.solver.refresh()
     wait_solved(qtbot, window.solver)
+    window.panels.open_drawer()
     table = window.panels.drawer.buses
     table.selectRow(table.sorted.row_of(part(window, "Board A")))
     assert window.session.selection == {part(window, "Board A")}

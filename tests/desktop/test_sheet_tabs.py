@@ -95,3 +95,8 @@ def test_titles_follow_the_plant(bench: tuple[Session, SheetTabs]) -> None:
     assert tabs.tabText(1) == "Drives"
     session.undo()
     assert tabs.tabText(1) == "Boards"
+    session.apply(rename_sheet(session.plant, session.plant.sheets[1].id, "Fans & pumps"))
+    assert tabs.tabText(1) == "Fans && pumps"  # one & would underline a letter
+    session.show_sheet(session.plant.sheets[1].id)
+    tabs.rename_current()
+    assert line(tabs).text() == "Fans & pumps"

@@ -24,10 +24,10 @@ def test_a_figure_keeps_its_significant_digits(size: float, minus: bool, digits:
         (0, "0"),
         (12.936, "12.9"),
         (0.40251, "0.403"),
-        (0.4, "0.4"),
+        (0.4, "0.400"),
         (1590.4, "1590"),
         (99.96, "100"),
-        (-0.5, "−0.5"),
+        (-0.5, "−0.500"),
         (math.inf, "∞"),
         (math.nan, "–"),
         (1.5e-7, "1.50e−07"),
@@ -39,7 +39,7 @@ def test_figures(value: float, shown: str) -> None:
 
 
 @pytest.mark.parametrize(
-    ("ka", "shown"), [(12.936, "12.9 kA"), (0.0421, "42.1 A"), (0.1, "0.1 kA"), (0, "0 A"), (-0.02, "−20.0 A")]
+    ("ka", "shown"), [(12.936, "12.9 kA"), (0.0421, "42.1 A"), (0.1, "0.100 kA"), (0, "0 A"), (-0.02, "−20.0 A")]
 )
 def test_currents(ka: float, shown: str) -> None:
     assert current_text(ka) == shown

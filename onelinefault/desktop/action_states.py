@@ -69,7 +69,7 @@ class ActionStates(QObject):
         for key, step in (("undo", history.next_undo), ("redo", history.next_redo)):
             action, words = self._actions[key], BY_KEY[key].shown
             action.setEnabled(step is not None)
-            action.setText(f"{words} {step}" if step else words)
+            action.setText(f"{words} {step.replace('&', '&&')}" if step else words)
             short = action.iconText()
             action.setToolTip(f"{short} {step}" if step else BY_KEY[key].sentence)
             action.setIconText(short)

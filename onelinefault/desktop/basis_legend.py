@@ -17,11 +17,11 @@ class BasisLegend(QWidget):
         self._words = tuple(zip(("nameplate", "letter", "typical", "guessed"), names, strict=True))
         self.setAccessibleName(self.tr("Basis: how each value is known"))
         self.setToolTip(self.tr("Click the mark beside a value, or press Ctrl+B in its field, to say how it is known"))
-        self.setFixedHeight(26)
+        self.setFixedHeight(self.fontMetrics().height() + 11)
 
     def sizeHint(self) -> QSize:
         """One line."""
-        return QSize(300, 26)
+        return QSize(300, self.fontMetrics().height() + 11)
 
     def paintEvent(self, event: object) -> None:
         """Marks and words, closer together where there is little room."""

@@ -56,7 +56,7 @@ class Table(QTableView):
         self.setShowGrid(False)
         self.setTabKeyNavigation(False)
         self.verticalHeader().hide()
-        self.verticalHeader().setDefaultSectionSize(_ROW_HEIGHT)
+        self.verticalHeader().setDefaultSectionSize(max(_ROW_HEIGHT, self.fontMetrics().height() + 9))
         self.horizontalHeader().setHighlightSections(False)
         self.horizontalHeader().setStretchLastSection(True)
         self.setHorizontalScrollMode(QAbstractItemView.ScrollMode.ScrollPerPixel)
@@ -88,7 +88,8 @@ class Table(QTableView):
     def follow(self, parts: frozenset[str]) -> None:
         """Select the row of what is selected on the sheet, without saying so."""
         self._following = True
-        row = next((r for r in range(self.sorted.rowCount()) if parts & set(self.sorted.parts_at(r))), -1)
+        known = parts & self.sorted.table.row_of.keys()
+        row = self.sorted.row_of(min(known)) if known else -1
         if row < 0:
             self.clearSelection()
         elif row not in {index.row() for index in self.selectionModel().selectedRows()}:
@@ -223,6 +224,7 @@ class Drawer(QStackedWidget):
         self.is_open = is_open
         self.setVisible(is_open)
         self.strip.show_open(is_open)
+        self._fill()
         self.opened.emit(is_open)
 
     def copy(self) -> None:
@@ -239,20 +241,24 @@ class Drawer(QStackedWidget):
             for table in self.tables:
                 table.sorted.table.show_stale()
             return
-        kind, plant = self._session.choices.kind, self._session.plant
-        result = answer.result if self._session.fault is not None else None
-        self.buses.sorted.table.show_rows(bus_rows(answer.rows, result, kind), bus_heads(kind))
-        self.findings.sorted.table.show_rows(finding_rows(answer.findings, plant))
-        self._show_counts()
-        self._follow()
+        self._show_counts(len({row.part for row in answer.rows}), len(answer.findings))
+        self._fill()
         self._open_for_new_errors()
 
-    def _show_counts(self) -> None:
-        for index, table in enumerate(self.tables):
-            count = table.sorted.table.rowCount()
-            self.strip.tabs.setTabText(
-                index, f"{table.accessibleName()} {count}".strip() if count else table_name(table)
-            )
+    def _fill(self) -> None:
+        """Fill the tables, unless nobody can see them."""
+        answer, kind = self._solver.answer, self._session.choices.kind
+        if answer is None or self._solver.stale or not self.is_open:
+            return
+        result = answer.result if self._session.fault is not None else None
+        self.buses.sorted.table.show_rows(bus_rows(answer.rows, result, kind), bus_heads(kind))
+        self.findings.sorted.table.show_rows(finding_rows(answer.findings, self._session.plant))
+        self._follow()
+
+    def _show_counts(self, *counts: int) -> None:
+        for index, (table, count) in enumerate(zip(self.tables, counts, strict=True)):
+            name = table.accessibleName()
+            self.strip.tabs.setTabText(index, f"{name} {count}" if count else name)
 
     def _open_for_new_errors(self) -> None:
         """Open by itself only for an error that stands in the way of a fault that is asked for."""
@@ -275,13 +281,9 @@ class Drawer(QStackedWidget):
         self._follow()
 
     def _follow(self) -> None:
-        for table in self.tables:
-            table.follow(self._session.selection)
-
-
-def table_name(table: Table) -> str:
-    """What a table is called on its tab."""
-    return table.accessibleName()
+        if self.is_open:
+            for table in self.tables:
+                table.follow(self._session.selection)
 
 
 def _button(words: str, tip: str) -> QToolButton:

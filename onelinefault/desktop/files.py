@@ -9,7 +9,7 @@ from collections.abc import Callable
 from pathlib import Path
 from typing import TYPE_CHECKING, Final
 
-from PySide6.QtCore import QObject, QTimer
+from PySide6.QtCore import QObject, Qt, QTimer
 from PySide6.QtGui import QAction
 from PySide6.QtWidgets import QFileDialog, QMessageBox, QWidget
 
@@ -323,6 +323,7 @@ class Files(QObject):
     def _message(self, words: str) -> QMessageBox:
         box = QMessageBox(self._window)
         box.setWindowTitle(self.tr("OneLineFault"))
+        box.setTextFormat(Qt.TextFormat.PlainText)
         box.setText(words)
         box.finished.connect(box.deleteLater)
         self.dialog = box

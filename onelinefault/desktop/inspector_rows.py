@@ -185,6 +185,7 @@ class Row(QWidget):
         self.label.setWordWrap(True)
         self.trouble = QLabel()
         self.trouble.setProperty("part", "trouble")
+        self.trouble.setTextFormat(Qt.TextFormat.PlainText)
         self.trouble.setWordWrap(True)
         self.trouble.hide()
         self._grid = QGridLayout(self)

@@ -4,7 +4,7 @@ from __future__ import annotations
 
 from collections.abc import Sequence
 
-from PySide6.QtCore import Signal
+from PySide6.QtCore import Qt, Signal
 from PySide6.QtWidgets import QFrame, QHBoxLayout, QLabel, QPushButton
 
 
@@ -17,6 +17,7 @@ class NoticeBar(QFrame):
         super().__init__()
         self.setProperty("part", "notice")
         self.words = QLabel()
+        self.words.setTextFormat(Qt.TextFormat.PlainText)
         self.words.setWordWrap(True)
         self.buttons: dict[str, QPushButton] = {}
         self._row = QHBoxLayout(self)

@@ -9,7 +9,7 @@ from math import ceil
 from pathlib import Path
 from typing import TYPE_CHECKING, Final
 
-from PySide6.QtCore import QMarginsF, QObject, QRectF, QSizeF
+from PySide6.QtCore import QMarginsF, QObject, QRectF, QSizeF, Qt
 from PySide6.QtGui import QPageLayout, QPageSize, QPaintEngine, QPainter
 from PySide6.QtWidgets import QDialog, QFileDialog, QMessageBox, QWidget
 
@@ -196,6 +196,7 @@ class Printing(QObject):
     def _tell(self, words: str) -> None:
         box = QMessageBox(self._window)
         box.setWindowTitle(self.tr("OneLineFault"))
+        box.setTextFormat(Qt.TextFormat.PlainText)
         box.setText(words)
         self._open(box)
 

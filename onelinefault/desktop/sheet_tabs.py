@@ -41,7 +41,7 @@ class SheetTabs(QTabBar):
     def refresh(self, *_: object) -> None:
         """Show the sheets as they are."""
         sheets = self._session.plant.sheets
-        wanted = [(sheet.id, sheet.title) for sheet in sheets]
+        wanted = [(sheet.id, sheet.title.replace("&", "&&")) for sheet in sheets]
         self._filling = True
         if wanted != [(self.tabData(i), self.tabText(i)) for i in range(self.count())]:
             while self.count() > len(wanted):
@@ -60,7 +60,7 @@ class SheetTabs(QTabBar):
         self._renaming = self._session.sheet_id
         self.setVisible(True)
         index = self.currentIndex()
-        self._line.setText(self.tabText(index))
+        self._line.setText(self.tabText(index).replace("&&", "&"))
         self._line.setGeometry(self.tabRect(index).adjusted(0, 1, 60, -1))
         self._line.selectAll()
         self._line.show()

@@ -28,7 +28,7 @@ from onelinefault.drawing.symbols import Look, symbol
 TILE: Final = QSize(64, 66)
 _SCALE: Final = 0.72
 _PICTURE: Final = QRectF(4, 5, 56, 43)
-_NAME_PT: Final = (7.1, 6.7, 6.3)  # a long name is set smaller before it is cut
+_NAME_SHARES: Final = (0.79, 0.74, 0.7)  # of the usual size; a long name is set smaller before it is cut
 
 
 def offer_shapes(offer: Offer) -> Shapes:
@@ -133,8 +133,8 @@ class PartTile(QAbstractButton):
 
     def _paint_name(self, painter: QPainter) -> None:
         font, room = self.font(), self.rect().adjusted(2, 48, -2, -3)
-        for points in _NAME_PT:
-            font.setPointSizeF(points)
+        for share in _NAME_SHARES:
+            font.setPointSizeF(self.font().pointSizeF() * share)
             painter.setFont(font)
             if painter.fontMetrics().horizontalAdvance(self.text()) <= room.width():
                 break

@@ -28,6 +28,7 @@ class StatusLine(QStatusBar):
         self._session, self._solver = session, solver
         self.setSizeGripEnabled(False)
         self.said = QLabel(self.tr(_AT_FIRST))
+        self.said.setTextFormat(Qt.TextFormat.PlainText)
         self.said.setSizePolicy(QSizePolicy.Policy.Ignored, QSizePolicy.Policy.Preferred)
         self.said.setAccessibleName(self.tr("Message"))
         self.solved = QLabel()

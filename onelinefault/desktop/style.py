@@ -126,7 +126,7 @@ QLabel[part="caption"] { color: @muted; font-size: @size_small; }
 QLabel[part="caps"] { color: @muted; font-size: @size_caps; font-weight: bold; letter-spacing: 1px; }
 QLabel[part="value"] { color: @ink; font-size: @size_row; }
 QLabel[part="trouble"] { color: @trouble; font-size: @size_small; }
-QLabel[part="stale"] { color: @stale; font-size: @size_row; }
+QLabel[part="label"]:disabled, QLabel[part="value"]:disabled, QLabel[part="caps"]:disabled { color: @stale; }
 QLineEdit, QComboBox, QSpinBox { background: @field; color: @ink; border: 1px solid @line; border-radius: 5px;
     padding: 2px 7px; min-height: 17px; font-size: @size_row; selection-background-color: @focus; }
 QLineEdit:focus, QComboBox:focus, QSpinBox:focus { border: 2px solid @focus; padding: 1px 6px; }

@@ -119,7 +119,6 @@ class TopLine(QWidget):
         self.name.setProperty("part", "heading")
         self.method.show_choice("classical")
         self.setSizePolicy(QSizePolicy.Policy.Expanding, QSizePolicy.Policy.Fixed)
-        self.setFixedHeight(HEIGHT)
         self.setAccessibleName(self.tr("Top line"))
 
     def _lay_out(self) -> None:
@@ -211,7 +210,11 @@ class TopLine(QWidget):
 
     def minimumSizeHint(self) -> QSize:
         """The window may be narrower than the line would like: it then drops its labels and stands closer."""
-        return QSize(400, HEIGHT)
+        return QSize(400, max(HEIGHT, self._row.sizeHint().height() + 10))
+
+    def sizeHint(self) -> QSize:
+        """As wide as there is room, as high as its text."""
+        return QSize(1000, self.minimumSizeHint().height())
 
     def resizeEvent(self, event: QResizeEvent) -> None:
         """Use the loosest of the three settings that fits."""

@@ -86,8 +86,7 @@ class WorkingPanel(QWidget):
         self._labels: list[tuple[QLabel, QLabel]] = []
         self._shown: list[Line] = []
         self._stale = False
-        self.note = QLabel()
-        self.note.setProperty("part", "muted")
+        self.note = _plain_label("muted")
         self.note.setWordWrap(True)
         self.note.setTextInteractionFlags(Qt.TextInteractionFlag.TextSelectableByMouse)
         self._lay_out()
@@ -95,8 +94,9 @@ class WorkingPanel(QWidget):
         session.fault_changed.connect(self.refresh)
 
     def _lay_out(self) -> None:
-        inner = QWidget()
-        self._grid = QGridLayout()
+        inner, self._figures = QWidget(), QWidget()
+        self._grid = QGridLayout(self._figures)
+        self._grid.setContentsMargins(0, 0, 0, 0)
         self._grid.setHorizontalSpacing(10)
         self._grid.setVerticalSpacing(5)
         self._grid.setColumnStretch(1, 1)
@@ -104,7 +104,7 @@ class WorkingPanel(QWidget):
         column.setContentsMargins(16, 4, 12, 10)
         column.setSpacing(8)
         column.addWidget(self.note)
-        column.addLayout(self._grid)
+        column.addWidget(self._figures)
         column.addStretch(1)
         scroll = QScrollArea()
         scroll.setWidget(inner)
@@ -156,11 +156,11 @@ class WorkingPanel(QWidget):
         if lines == self._shown and stale == self._stale:
             return
         self._shown, self._stale = lines, stale
+        self._figures.setEnabled(not stale)
         self._make_room(len(lines))
         for (name, value), line in zip(self._labels, lines, strict=False):
             head = not line.value
-            _dress(name, "caps" if head else "stale" if stale else "label")
-            _dress(value, "stale" if stale else "value")
+            _dress(name, "caps" if head else "label")
             name.setText(line.name.upper() if head else line.name)
             value.setText(line.value)
         for pair in self._labels[len(lines) :]:
@@ -168,7 +168,7 @@ class WorkingPanel(QWidget):
 
     def _make_room(self, count: int) -> None:
         while len(self._labels) < count:
-            name, value = QLabel(), QLabel()
+            name, value = _plain_label("label"), _plain_label("value")
             value.setTextInteractionFlags(Qt.TextInteractionFlag.TextSelectableByMouse)
             row = len(self._labels)
             self._grid.addWidget(name, row, 0)
@@ -177,6 +177,13 @@ class WorkingPanel(QWidget):
         for name, value in self._labels[:count]:
             name.show()
             value.show()
+
+
+def _plain_label(part: str) -> QLabel:
+    label = QLabel()
+    label.setTextFormat(Qt.TextFormat.PlainText)
+    label.setProperty("part", part)
+    return label
 
 
 def _dress(label: QLabel, part: str) -> None:

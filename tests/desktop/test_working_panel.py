@@ -16,7 +16,7 @@ from tests.drawing.plants import pump_house
 
 def test_impedances_are_written_as_people_do() -> None:
     assert impedance_text(0.0041 + 0.0804j) == "0.004100 + j0.08040 Ω"
-    assert impedance_text(1 - 0.5j) == "1.000 − j0.5 Ω"
+    assert impedance_text(1 - 0.5j) == "1.000 − j0.5000 Ω"
     assert impedance_text(None) == "open"
 
 

@@ -315,12 +315,12 @@ class Canvas(PartDrops):
 
     def show_answer(self) -> None:
         """Show the present answer: colours by voltage, and the fault's figures, greyed while they are stale."""
-        from onelinefault.report.drawing import stamp_of  # noqa: PLC0415 - loads numpy, after the window stands
-        from onelinefault.report.overlay_data import overlay_data, roles_of  # noqa: PLC0415
-
         answer, session = self.solver.answer, self.session
         if answer is None:
             return
+        from onelinefault.report.drawing import stamp_of  # noqa: PLC0415 - numpy is loaded by now, in the worker
+        from onelinefault.report.overlay_data import overlay_data, roles_of  # noqa: PLC0415
+
         if answer.network is not None and not self.solver.stale:
             self.scene.show_roles(roles_of(answer.network))
         result = answer.result

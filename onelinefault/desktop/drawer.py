@@ -12,20 +12,15 @@ from PySide6.QtWidgets import (
     QHeaderView,
     QLineEdit,
     QStackedWidget,
-    QTabBar,
     QTableView,
     QToolButton,
     QWidget,
 )
 
-from onelinefault.desktop.drawer_models import (
-    FINDING_HEADS,
-    SortedTable,
-    TableModel,
-    bus_heads,
-    bus_rows,
-    finding_rows,
-)
+from onelinefault.desktop.drawer_models import SortedTable, TableModel
+from onelinefault.desktop.drawer_rows import FINDING_HEADS, bus_heads, bus_rows, finding_rows
+from onelinefault.desktop.style import widget_scale
+from onelinefault.desktop.tabs import Tabs
 from onelinefault.model.findings import Severity
 
 if TYPE_CHECKING:
@@ -65,7 +60,7 @@ class Table(QTableView):
 
     def set_shares(self, widths: tuple[int, ...]) -> None:
         """Column widths, which grow together where there is more room; what a person has dragged stays."""
-        self._shares = widths
+        self._shares = tuple(round(width * widget_scale(self)) for width in widths)
         self._share_out()
 
     def resizeEvent(self, event: QResizeEvent) -> None:
@@ -78,7 +73,7 @@ class Table(QTableView):
         factor = min(max(self.viewport().width() / max(sum(self._shares), 1), 1.0), 1.7)
         self._sharing = True
         for column, width in enumerate(self._shares):
-            self.setColumnWidth(column, width if width < 40 else int(width * factor))
+            self.setColumnWidth(column, int(width * factor))
         self._sharing = False
 
     def _column_dragged(self, column: int, *_: int) -> None:
@@ -114,11 +109,9 @@ class DrawerStrip(QWidget):
 
     def __init__(self) -> None:
         super().__init__()
-        self.tabs = QTabBar()
-        self.tabs.setDrawBase(False)
-        self.tabs.setExpanding(False)
+        self.tabs = Tabs()
+        self.tabs.setUsesScrollButtons(False)
         self.tabs.setAccessibleName(self.tr("Tables"))
-        self.tabs.setFocusPolicy(Qt.FocusPolicy.TabFocus)
         self.filter = QLineEdit()
         self.filter.setPlaceholderText(self.tr("Filter"))
         self.filter.setAccessibleName(self.tr("Filter the table"))

@@ -1,146 +1,28 @@
-"""Tables of the drawer as Qt models: the buses with their fault currents, and the findings."""
+"""Tables of the drawer as Qt models: sorted, filtered, copied."""
 
 from __future__ import annotations
 
 from collections.abc import Sequence
-from dataclasses import dataclass
-from typing import TYPE_CHECKING, Any, Final
+from typing import Any, Final
 
 from PySide6.QtCore import QAbstractTableModel, QModelIndex, QPersistentModelIndex, QSize, QSortFilterProxyModel, Qt
 from PySide6.QtGui import QColor, QFont, QGuiApplication, QIcon, QPainter, QPalette, QPixmap
 
+from onelinefault.desktop.drawer_rows import Cell, Head, Rows, TableRow
 from onelinefault.drawing.painter import paint
 from onelinefault.drawing.palette import SHEET
 from onelinefault.drawing.shapes import Shapes
 from onelinefault.drawing.symbols_marks import verdict
 from onelinefault.model.caution import CAUTION_SHORT
-from onelinefault.model.fault import FaultKind
-from onelinefault.model.figures import figure
-from onelinefault.model.findings import Finding, Severity
-
-if TYPE_CHECKING:
-    from onelinefault.engine.results import BusRow, FaultResult
-    from onelinefault.model.plant import Plant
 
 Index = QModelIndex | QPersistentModelIndex
 SORT_ROLE: Final = int(Qt.ItemDataRole.UserRole)
 PARTS_ROLE: Final = int(Qt.ItemDataRole.UserRole) + 1
-_MARKS: Final = {Severity.ERROR: "exceeded", Severity.WARNING: "near", Severity.HINT: "holds"}
-_ORDER: Final = (Severity.ERROR, Severity.WARNING, Severity.HINT)
-_KIND_WORDS: Final = {
-    FaultKind.THREE_PHASE: "3 ph", FaultKind.LINE_TO_LINE: "2 ph",
-    FaultKind.TWO_LINES_TO_EARTH: "2 ph–E", FaultKind.LINE_TO_EARTH: "1 ph–E",
-}  # fmt: skip
-
-
-@dataclass(frozen=True, slots=True)
-class Cell:
-    """What a table shows in one place, and the value it is sorted by."""
-
-    text: str
-    order: float | str
-
-
-def number(value: float | None) -> Cell:
-    """A figure; a dash where there is none."""
-    return Cell("–", float("-inf")) if value is None else Cell(figure(value), value)
-
-
-def words(text: str) -> Cell:
-    """A text, sorted without regard to case."""
-    return Cell(text, text.casefold())
-
-
-@dataclass(frozen=True, slots=True)
-class Head:
-    """A heading: short on the screen, full where the table is copied to, explained in a tooltip."""
-
-    short: str
-    full: str = ""
-    tip: str = ""
-
-    @property
-    def copied(self) -> str:
-        """The heading for a copy."""
-        return self.full or self.short
-
-
-@dataclass(frozen=True, slots=True)
-class TableRow:
-    """One row: its cells, and the parts it speaks of."""
-
-    cells: tuple[Cell, ...]
-    parts: tuple[str, ...]
-    mark: str = ""
-    hint: str = ""
-
-
-def bus_heads(kind: FaultKind) -> tuple[Head, ...]:
-    """The headings of the bus table; peak and X/R are of one kind of fault."""
-    kinds = tuple(Head(f"I″ {word}", f"I″ {word} kA", _CURRENT_TIP) for word in _KIND_WORDS.values())
-    word = _KIND_WORDS[kind]
-    return (
-        Head("Bus"),
-        Head("kV", "nominal kV"),
-        *kinds,
-        Head(f"peak {word}", f"peak {word} kA", "Largest asymmetrical peak of the kind of fault chosen, kA"),
-        Head(f"X/R {word}", tip="Of the impedance that the current of the chosen kind of fault flows through"),
-        Head("level MVA", "fault level MVA", "Three-phase fault level: √3 · nominal voltage · I″, MVA"),
-        Head("left %", "voltage left %", "Smallest phase-to-earth voltage while the fault stands, % of nominal"),
-    )
-
-
-_CURRENT_TIP: Final = "Initial symmetrical short-circuit current of the largest phase, kA"
-
-
-def bus_rows(rows: Sequence[BusRow], result: FaultResult | None, kind: FaultKind) -> list[TableRow]:
-    """One row a bus. result: the standing fault, for the voltage left; kind: whose peak and X/R are shown."""
-    by_bus: dict[str, dict[str, BusRow]] = {}
-    for row in rows:
-        by_bus.setdefault(row.part, {})[str(row.kind)] = row
-    return [_bus_row(part, found, result, kind) for part, found in by_bus.items()]
-
-
-def _bus_row(part: str, found: dict[str, BusRow], result: FaultResult | None, kind: FaultKind) -> TableRow:
-    any_row = next(iter(found.values()))
-    chosen, three = found.get(str(kind)), found.get(str(FaultKind.THREE_PHASE))
-    cells = (
-        words(any_row.bus),
-        Cell(f"{any_row.nominal_kv:.4g}", any_row.nominal_kv),
-        *(number(found[str(k)].ik_ka if str(k) in found else None) for k in _KIND_WORDS),
-        number(chosen.peak_ka if chosen else None),
-        number(chosen.x_over_r if chosen else None),
-        number(three.fault_level_mva if three else None),
-        _left(part, result),
-    )
-    assumed = "; ".join(dict.fromkeys(text for row in found.values() for text in row.assumed))
-    return TableRow(cells, (part,), hint=f"Rests on typical or guessed data: {assumed}" if assumed else "")
-
-
-def _left(part: str, result: FaultResult | None) -> Cell:
-    node = None if result is None else result.network.node_of.get((part, "bar"))
-    if result is None or node is None:
-        return Cell("", float("-inf"))
-    percent = float(result.voltage_left[node]) * 100
-    return Cell(f"{percent:.0f}", percent)
-
-
-FINDING_HEADS: Final = (Head("", "Severity"), Head("Finding"), Head("What to do"), Head("Parts"))
-
-
-def finding_rows(findings: Sequence[Finding], plant: Plant) -> list[TableRow]:
-    """One row a finding, errors first."""
-    rows = []
-    for finding in sorted(findings, key=lambda f: _ORDER.index(f.severity)):
-        names = [plant.parts[key].name or plant.parts[key].title for key in finding.parts if key in plant.parts]
-        cells = (
-            Cell(finding.severity.value, _ORDER.index(finding.severity)),
-            words(finding.message),
-            words(finding.remedy),
-            words(", ".join(names)),
-        )
-        rows.append(TableRow(cells, finding.parts, _MARKS[finding.severity], f"{finding.message}. {finding.remedy}"))
-    return rows
+_ROLE = Qt.ItemDataRole
+_ROLES: Final = (
+    _ROLE.DisplayRole, SORT_ROLE, PARTS_ROLE, _ROLE.DecorationRole, _ROLE.ForegroundRole, _ROLE.FontRole,
+    _ROLE.ToolTipRole, _ROLE.AccessibleTextRole,
+)  # fmt: skip
 
 
 class TableModel(QAbstractTableModel):
@@ -152,24 +34,24 @@ class TableModel(QAbstractTableModel):
     def __init__(self, heads: Sequence[Head], mark_column: int = -1) -> None:
         super().__init__()
         self.heads = tuple(heads)
-        self.rows: list[TableRow] = []
+        self.rows = Rows()
         self.row_of: dict[str, int] = {}
         self.stale = False
         self._mark_column = mark_column
 
-    def show_rows(self, rows: list[TableRow], heads: Sequence[Head] | None = None) -> None:
+    def show_rows(self, rows: Rows, heads: Sequence[Head] | None = None) -> None:
         """Show other rows; rows that only changed their figures stay where they are."""
         self.stale = False
         if heads is not None and tuple(heads) != self.heads:
             self.heads = tuple(heads)
             self.headerDataChanged.emit(Qt.Orientation.Horizontal, 0, len(self.heads) - 1)
-        if [row.parts for row in rows] == [row.parts for row in self.rows]:
+        if rows.parts == self.rows.parts:
             self.rows = rows
             self._renew()
             return
         self.beginResetModel()
         self.rows = rows
-        self.row_of = {part: row for row in reversed(range(len(rows))) for part in rows[row].parts}
+        self.row_of = {part: row for row in reversed(range(len(rows))) for part in rows.parts[row]}
         self.endResetModel()
 
     def show_stale(self) -> None:
@@ -204,14 +86,16 @@ class TableModel(QAbstractTableModel):
 
     def data(self, index: Index, role: int = Qt.ItemDataRole.DisplayRole) -> Any:
         """Text, order, parts, mark, colour of one cell."""
+        if role not in _ROLES:
+            return None
+        if role == PARTS_ROLE:
+            return self.rows.parts[index.row()]
         row, column = self.rows[index.row()], index.column()
         cell = row.cells[column]
         if role == Qt.ItemDataRole.DisplayRole:
             return "" if column == self._mark_column else cell.text
         if role == SORT_ROLE:
             return cell.order
-        if role == PARTS_ROLE:
-            return row.parts
         return self._look(row, column, cell, role)
 
     def _look(self, row: TableRow, column: int, cell: Cell, role: int) -> Any:

@@ -1,7 +1,6 @@
 """The sheet from far away: all outlines merged into one path for each colour, painted at once, without words."""
 
 from collections.abc import Mapping
-from functools import lru_cache
 
 from PySide6.QtCore import QRectF, Qt
 from PySide6.QtGui import QColor, QPainter, QPainterPath, QPen
@@ -66,6 +65,11 @@ def merged_paths(picture: SheetPicture) -> dict[str, QPainterPath]:
     return merged
 
 
-@lru_cache(maxsize=1024)
+_PATHS: dict[int, tuple[Symbol, Mapping[str, QPainterPath]]] = {}  # by identity: equal looks share one symbol
+
+
 def _symbol_paths(symbol: Symbol) -> Mapping[str, QPainterPath]:
-    return overview_paths(symbol.shapes)
+    known = _PATHS.get(id(symbol))
+    if known is None:
+        known = _PATHS[id(symbol)] = (symbol, overview_paths(symbol.shapes))
+    return known[1]

@@ -11,14 +11,15 @@ from onelinefault.desktop.drawer import Drawer
 from onelinefault.desktop.inspector import Inspector
 from onelinefault.desktop.panel import Panel
 from onelinefault.desktop.settings import LAYOUT_VERSION
-from onelinefault.desktop.shelf import Shelf
+from onelinefault.desktop.shelf import WIDTH, Shelf
+from onelinefault.desktop.style import widget_scale
 from onelinefault.desktop.working_panel import WorkingPanel
 
 if TYPE_CHECKING:
     from onelinefault.desktop.session import Session
     from onelinefault.desktop.solver import Solver
 
-_SHELF_WIDTH, _INSPECTOR_WIDTH, _DRAWER_HEIGHT = 168, 330, 215
+_INSPECTOR_WIDTH, _DRAWER_HEIGHT = 330, 215
 _ANY_HEIGHT: Final = 16_777_215  # QWIDGETSIZE_MAX
 
 
@@ -70,8 +71,9 @@ class Panels(QObject):
 
     def _set_sizes(self) -> None:
         docks, window = self.docks, self._window
+        scale = widget_scale(window)
         sideways = [docks["shelf"], docks["inspector"]]
-        window.resizeDocks(sideways, [_SHELF_WIDTH, _INSPECTOR_WIDTH], Qt.Orientation.Horizontal)
+        window.resizeDocks(sideways, [round(WIDTH * scale), round(_INSPECTOR_WIDTH * scale)], Qt.Orientation.Horizontal)
         window.resizeDocks([docks["inspector"], docks["working"]], [540, 420], Qt.Orientation.Vertical)
 
     def restore(self, geometry: QByteArray, state: QByteArray, drawer_open: bool) -> None:

@@ -6,8 +6,9 @@ from typing import TYPE_CHECKING
 
 from PySide6.QtCore import Qt
 from PySide6.QtGui import QKeyEvent, QMouseEvent
-from PySide6.QtWidgets import QLineEdit, QTabBar
+from PySide6.QtWidgets import QLineEdit
 
+from onelinefault.desktop.tabs import Tabs
 from onelinefault.errors import OneLineFaultError
 from onelinefault.model.editing import move_sheet, rename_sheet
 
@@ -15,7 +16,7 @@ if TYPE_CHECKING:
     from onelinefault.desktop.session import Session
 
 
-class SheetTabs(QTabBar):
+class SheetTabs(Tabs):
     """A click turns to a sheet, a drag changes the order, a double click renames."""
 
     def __init__(self, session: Session) -> None:
@@ -23,11 +24,8 @@ class SheetTabs(QTabBar):
         self._session = session
         self._filling = False
         self._renaming = ""
-        self.setDrawBase(False)
-        self.setExpanding(False)
         self.setMovable(True)
         self.setAccessibleName(self.tr("Sheets"))
-        self.setFocusPolicy(Qt.FocusPolicy.TabFocus)
         self._line = _TitleLine(self)
         self._line.setAccessibleName(self.tr("Title of the sheet"))
         self._line.hide()

@@ -20,12 +20,13 @@ from PySide6.QtWidgets import (
 
 from onelinefault.desktop.catalogue import GROUPS, OFFERS, Offer, found, group_name
 from onelinefault.desktop.drop import part_mime
-from onelinefault.desktop.style import symbol_palette
+from onelinefault.desktop.style import symbol_palette, widget_scale
 from onelinefault.drawing.painter import Painter
 from onelinefault.drawing.shapes import Box, Shapes, bounds
 from onelinefault.drawing.symbols import Look, symbol
 
 TILE: Final = QSize(64, 66)
+WIDTH: Final = 168
 _SCALE: Final = 0.72
 _PICTURE: Final = QRectF(4, 5, 56, 43)
 _NAME_SHARES: Final = (0.79, 0.74, 0.7)  # of the usual size; a long name is set smaller before it is cut
@@ -66,7 +67,8 @@ class PartTile(QAbstractButton):
         super().__init__(parent)
         self.offer = offer
         self.setText(offer.shown)
-        self.setFixedSize(TILE)
+        self._scale = widget_scale(self)
+        self.setFixedSize(TILE * self._scale)
         self.setAccessibleName(offer.shown)
         self.setToolTip(self.tr("{0}: drag it on to the sheet, or click here and then there").format(offer.shown))
         self.setStatusTip(self.toolTip())
@@ -106,13 +108,13 @@ class PartTile(QAbstractButton):
         """Carry the part away; the sheet shows it where it would land."""
         drag = QDrag(self)
         drag.setMimeData(part_mime(self.offer.kind, dict(self.offer.presets)))
-        picture = QPixmap(TILE)
+        picture = QPixmap(self.size())
         picture.fill(Qt.GlobalColor.transparent)
         painter = QPainter(picture)
-        paint_offer(painter, self.offer, self.palette(), _PICTURE)
+        paint_offer(painter, self.offer, self.palette(), self._picture)
         painter.end()
         drag.setPixmap(picture)
-        drag.setHotSpot(QPoint(int(_PICTURE.center().x()), int(_PICTURE.center().y())))
+        drag.setHotSpot(self._picture.center().toPoint())
         drag.exec(Qt.DropAction.CopyAction)
 
     def paintEvent(self, event: object) -> None:
@@ -127,12 +129,18 @@ class PartTile(QAbstractButton):
         painter.setBrush(palette.midlight() if lit else palette.alternateBase())
         inset = width / 2
         painter.drawRoundedRect(QRectF(self.rect()).adjusted(inset, inset, -inset, -inset), 7, 7)
-        paint_offer(painter, self.offer, palette, _PICTURE)
+        paint_offer(painter, self.offer, palette, self._picture)
         painter.setPen(palette.windowText().color())
         self._paint_name(painter)
 
+    @property
+    def _picture(self) -> QRectF:
+        """Where the symbol stands."""
+        s = self._scale
+        return QRectF(_PICTURE.x() * s, _PICTURE.y() * s, _PICTURE.width() * s, _PICTURE.height() * s)
+
     def _paint_name(self, painter: QPainter) -> None:
-        font, room = self.font(), self.rect().adjusted(2, 48, -2, -3)
+        font, room = self.font(), self.rect().adjusted(2, int(self._picture.bottom()), -2, -3)
         for share in _NAME_SHARES:
             font.setPointSizeF(self.font().pointSizeF() * share)
             painter.setFont(font)
@@ -192,11 +200,12 @@ class Shelf(QWidget):
         line.addWidget(self.search)
         whole.addLayout(line)
         whole.addWidget(scroll)
-        self.setMinimumWidth(168)
+        self._width = round(WIDTH * widget_scale(self))
+        self.setMinimumWidth(self._width)
 
     def sizeHint(self) -> QSize:
         """Two tiles wide."""
-        return QSize(168, 600)
+        return QSize(self._width, 600)
 
     def _filter(self, typed: str) -> None:
         fitting = found(typed)

@@ -8,6 +8,7 @@ from typing import TYPE_CHECKING, Any
 
 from PySide6.QtCore import QObject, QThread, QTimer, Signal, Slot
 
+from onelinefault.desktop.collecting import Collector
 from onelinefault.errors import OneLineFaultError
 
 if TYPE_CHECKING:
@@ -120,6 +121,7 @@ class Solver(QObject):
         self._timer.timeout.connect(self._send)
         for signal in (session.plant_changed, session.fault_changed, session.choices_changed):
             signal.connect(self.refresh)
+        self._collector = Collector(self)
         self._thread.start()
 
     def refresh(self, *_: object) -> None:
@@ -136,6 +138,7 @@ class Solver(QObject):
         self._ticket += 1
         self._thread.quit()
         self._thread.wait(5000)
+        self._collector.stop()
 
     @property
     def working(self) -> bool:

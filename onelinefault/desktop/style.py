@@ -9,7 +9,7 @@ from typing import Final
 
 from PySide6.QtCore import QObject, Qt
 from PySide6.QtGui import QColor, QFont, QGuiApplication, QPalette
-from PySide6.QtWidgets import QApplication
+from PySide6.QtWidgets import QApplication, QWidget
 
 from onelinefault.drawing.painter import load_fonts
 from onelinefault.drawing.palette import SHEET
@@ -62,6 +62,11 @@ def text_scale(system_pt: float) -> float:
     return min(max(system_pt / _USUAL_SYSTEM_PT, 1.0), 2.5)
 
 
+def widget_scale(widget: QWidget) -> float:
+    """How much larger a widget's text is than designed, at most 1.6 times: sizes in pixels follow it."""
+    return min(max(widget.font().pointSizeF() / _TEXT_PT, 1.0), 1.6)
+
+
 def symbol_palette(palette: QPalette) -> Mapping[str, str]:
     """Colours for symbols that stand on a tile instead of on paper."""
     ink, tile = palette.color(QPalette.ColorRole.WindowText), palette.color(QPalette.ColorRole.AlternateBase)
@@ -94,7 +99,8 @@ def qt_palette(colours: Surroundings) -> QPalette:
 def stylesheet(c: Surroundings, scale: float = 1.0) -> str:
     """The style sheet of the whole program; sizes of text follow ``scale``."""
     points = {name: f"{size * scale:.2f}pt" for name, size in _SIZES.items()}
-    names = {**{field: getattr(c, field) for field in Surroundings.__dataclass_fields__}, **points}
+    colours = {field: getattr(c, field) for field in Surroundings.__dataclass_fields__}
+    names = {**colours, **points, "height_status": f"{22 * scale:.0f}px"}
     text = _SHEET_TEXT
     for name in sorted(names, key=len, reverse=True):
         text = text.replace(f"@{name}", names[name])
@@ -115,7 +121,7 @@ QMenu::item:selected { background: @chosen; color: @on_chosen; }
 QMenu::item:disabled { color: @stale; background: transparent; }
 QMenu::separator { height: 1px; background: @line; margin: 4px 8px; }
 QToolTip { background: @status; color: @on_status; border: none; padding: 4px 7px; }
-QStatusBar { background: @status; color: @on_status; min-height: 22px; }
+QStatusBar { background: @status; color: @on_status; min-height: @height_status; }
 QStatusBar QLabel { color: @on_status; font-size: @size_small; padding: 0 10px; }
 QStatusBar::item { border: none; }
 QToolBar { background: @panel; border: none; border-bottom: 1px solid @line; padding: 0; spacing: 0; }

@@ -36,7 +36,9 @@ class SheetView(QGraphicsView):
         self.setResizeAnchor(QGraphicsView.ViewportAnchor.AnchorViewCenter)
         self.setViewportUpdateMode(QGraphicsView.ViewportUpdateMode.SmartViewportUpdate)
         for policy in (self.setHorizontalScrollBarPolicy, self.setVerticalScrollBarPolicy):
-            policy(Qt.ScrollBarPolicy.ScrollBarAlwaysOff)  # the wheel, the space bar and the middle button move the sheet
+            policy(
+                Qt.ScrollBarPolicy.ScrollBarAlwaysOff
+            )  # the wheel, the space bar and the middle button move the sheet
         self.setFrameShape(QGraphicsView.Shape.NoFrame)
         self.setMouseTracking(True)
         self.viewport().setMouseTracking(True)
@@ -85,8 +87,9 @@ class SheetView(QGraphicsView):
         """Desk, paper with a soft edge, and the dot grid where it can be seen."""
         area = QRectF(rect)
         page = self._paper_scene.page_rect()
-        painter.fillRect(area, QColor("#E9E6DF"))
-        painter.fillRect(page.translated(3, 4) & area, QColor("#D8D3C8"))
+        desk = self.palette().window().color()
+        painter.fillRect(area, desk.darker(105))
+        painter.fillRect(page.translated(3, 4) & area, desk.darker(114))
         painter.fillRect(page & area, QColor(SHEET["paper"]))
         if self.scale_factor >= _GRID_FROM_SCALE:
             painter.setBrushOrigin(QPointF(0, 0))

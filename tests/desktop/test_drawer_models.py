@@ -1,28 +1,15 @@
 """Tables of the drawer: right figures in right places, sorted as numbers, copied with headings and the caution."""
 
-import pytest
 from PySide6.QtCore import Qt
 from pytestqt.qtbot import QtBot
 
-from onelinefault.desktop.drawer_models import (
-    FINDING_HEADS,
-    SORT_ROLE,
-    SortedTable,
-    TableModel,
-    bus_heads,
-    bus_rows,
-    finding_rows,
-    mark_icon,
-    number,
-)
-from onelinefault.engine.case import Case
+from onelinefault.desktop.drawer_models import SORT_ROLE, SortedTable, TableModel, mark_icon
+from onelinefault.desktop.drawer_rows import FINDING_HEADS, bus_heads, bus_rows, finding_rows, number
 from onelinefault.engine.results import BusRow
 from onelinefault.model.caution import CAUTION_SHORT
-from onelinefault.model.fault import Fault, FaultKind, Place
+from onelinefault.model.fault import FaultKind
 from onelinefault.model.findings import Finding, Severity
 from onelinefault.model.plant import Plant
-from onelinefault.studies import study_of
-from tests.drawing.plants import pump_house
 
 
 def row(part: str, name: str, kind: FaultKind, ka: float, x_over_r: float | None = 5.0) -> BusRow:
@@ -42,34 +29,6 @@ def shown(table: SortedTable) -> list[list[str]]:
     return [
         [table.index(r, c).data() for c in range(table.columnCount())] for r in range(table.rowCount())
     ]  # fmt: skip
-
-
-def test_one_row_a_bus_with_each_kind_in_its_column(qtbot: QtBot) -> None:
-    rows = bus_rows(ROWS, None, FaultKind.THREE_PHASE)
-    assert [r.parts for r in rows] == [("p1",), ("p2",)]
-    texts = [[cell.text for cell in r.cells] for r in rows]
-    # Bus, kV, 3 ph, 2 ph, 2 ph-E, 1 ph-E, peak, X/R, level, left: 3 digits each; missing kinds are dashes
-    assert texts[0] == ["Bus A", "11", "9.50", "–", "–", "0.0421", "20.9", "5.00", "181", ""]
-    assert texts[1] == ["Bus B", "11", "12.9", "–", "–", "–", "28.5", "5.00", "246", ""]
-
-
-def test_peak_and_ratio_are_of_the_kind_chosen(qtbot: QtBot) -> None:
-    cells = bus_rows(ROWS, None, FaultKind.LINE_TO_EARTH)[0].cells
-    assert [cell.text for cell in cells[6:8]] == ["0.0926", "–"]
-    heads = bus_heads(FaultKind.LINE_TO_EARTH)
-    assert (heads[6].short, heads[7].short) == ("peak 1 ph–E", "X/R 1 ph–E")
-    assert len(heads) == len(cells)
-
-
-def test_the_table_of_a_real_plant_shows_the_studys_own_figures(qtbot: QtBot) -> None:
-    plant, ids = pump_house()
-    study = study_of(plant, Case())
-    result = study.fault(Fault(Place(ids["board"])))
-    found = {r.parts[0]: r for r in bus_rows(study.all_buses(), result, FaultKind.THREE_PHASE)}
-    assert found.keys() == {ids["intake"], ids["board"]}
-    assert found[ids["board"]].cells[2].order == pytest.approx(result.ik_ka)
-    assert found[ids["board"]].cells[-1].order == pytest.approx(0, abs=1e-9)  # a bolted fault leaves no voltage
-    assert 0 < float(found[ids["intake"]].cells[-1].order) < 100
 
 
 def test_figures_sort_as_numbers_not_as_words(qtbot: QtBot) -> None:

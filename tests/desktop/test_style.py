@@ -4,9 +4,18 @@ import re
 
 import pytest
 from PySide6.QtGui import QPalette
-from PySide6.QtWidgets import QApplication
+from PySide6.QtWidgets import QApplication, QLabel
 
-from onelinefault.desktop.style import DARK, LIGHT, Surroundings, qt_palette, stylesheet, symbol_palette, text_scale
+from onelinefault.desktop.style import (
+    DARK,
+    LIGHT,
+    Surroundings,
+    qt_palette,
+    stylesheet,
+    symbol_palette,
+    text_scale,
+    widget_scale,
+)
 from onelinefault.drawing.palette import SHEET
 from tests.desktop.windows import dressed
 
@@ -55,6 +64,15 @@ def test_text_grows_with_the_system() -> None:
     large = re.search(r'QLabel\[part="heading"\] { font-size: ([\d.]+)pt', stylesheet(LIGHT, 2))
     assert small is not None and large is not None
     assert float(large.group(1)) == pytest.approx(2 * float(small.group(1)))
+
+
+def test_sizes_in_pixels_follow_the_text(qapp: QApplication) -> None:
+    label = QLabel()
+    font = label.font()
+    for points, scale in ((8, 1), (9, 1), (13.5, 1.5), (40, 1.6)):
+        font.setPointSizeF(points)
+        label.setFont(font)
+        assert widget_scale(label) == pytest.approx(scale, rel=0.02)
 
 
 def test_the_surroundings_change_and_the_paper_does_not(qapp: QApplication) -> None:

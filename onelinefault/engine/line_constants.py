@@ -61,7 +61,7 @@ def transposed(z: ComplexArray) -> tuple[complex, complex]:
     return own - mutual, own + 2 * mutual
 
 
-def sequence_impedances_ohm_per_km(  # noqa: PLR0917 - as many operands as the formula has
+def sequence_impedances_ohm_per_km(
     geometry: LineGeometry,
     phase_r_ohm_per_km: float,
     phase_gmr_m: float,

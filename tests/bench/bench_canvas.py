@@ -1,6 +1,6 @@
-"""Frames of the canvas with many parts, offscreen: pan, zoom, drag, select, open. Run: python tests/bench/bench_canvas.py
+"""Frames of the canvas with many parts, offscreen: pan, zoom, drag, select, open.
 
-Prints medians in ms; the goals stand in the contributor's guide. Absolute values move with the machine.
+Run: python tests/bench/bench_canvas.py [parts ...]. Prints medians in ms; absolute values move with the machine.
 """
 
 import os

@@ -242,6 +242,15 @@ class Canvas(PartDrops):
         hit = hit_at(self.scene, point.x(), point.y())
         if self.mode is None and hit.kind in ("part", "words", "bar-end"):
             self._rename(hit.key)
+        elif self.mode is None and hit.kind == "wire":
+            self._follow(hit.key)
+
+    def _follow(self, wire_id: str) -> None:
+        """Turn to the sheet on which a wire goes on, with its other end in view."""
+        wire, plant = self.session.plant.wires[wire_id], self.session.plant
+        away = [end.part for end in wire.ends if plant.parts[end.part].sheet != self.session.sheet_id]
+        if away:
+            self.centre_on(away[0])
 
     def _ask_menu(self, point: QPointF, screen: QPoint) -> None:
         if self.mode is not None:

@@ -146,6 +146,8 @@ class DragSegment:
 
     def move(self, point: QPointF, event: QMouseEvent) -> None:
         """Preview the wire."""
+        if self._canvas.scene.picture.wires[self._wire].link is not None:
+            return  # a wire to another sheet has no corners here
         (ax, _), (bx, _) = self._path[self._segment], self._path[self._segment + 1]
         offset = point.x() - self._start.x() if ax == bx else point.y() - self._start.y()
         delta = round(offset / MODULE_DU)

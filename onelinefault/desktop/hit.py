@@ -105,6 +105,8 @@ def _on_bar(bus: Bus, x: float, y: float, reach: float) -> bool:
 
 def _wire_at(scene: SheetScene, x: float, y: float, reach: float) -> Hit | None:
     for key, picture in scene.picture.wires.items():
+        if picture.link is not None and picture.link.holds(x, y):
+            return Hit("wire", key, segment=0)
         if picture.box.grown(reach).holds(x, y):
             segment = segment_at(picture.path, x / MODULE_DU, y / MODULE_DU, reach / MODULE_DU)
             if segment is not None:

@@ -9,6 +9,7 @@ from PySide6.QtWidgets import QApplication
 from onelinefault.desktop.drop import part_mime
 from onelinefault.drawing.sheet import sheet_picture
 from onelinefault.model.consumers import Bus
+from onelinefault.model.editing import add_sheet, move_to_sheet
 from onelinefault.model.plant import End
 from tests.desktop.conftest import Desk
 
@@ -198,3 +199,15 @@ def test_the_pin_on_a_cable_stands_at_a_fraction_and_slides(desk: Desk) -> None:
     assert fault is not None and fault.place.fraction == 0.5
     desk.canvas.fault_at(desk.ids["w1"], QPointF(400, 390))
     assert desk.session.fault is not None and desk.session.fault.place.fraction == 0.0
+
+
+def test_double_click_on_a_link_follows_the_wire_to_its_other_sheet(desk: Desk) -> None:
+    session = desk.session
+    session.apply(add_sheet(session.plant, "Pumps"))
+    other = session.plant.sheets[-1].id
+    session.apply(move_to_sheet(session.plant, [desk.ids["m1"]], other))
+    link = desk.canvas.scene.picture.wires[desk.ids["to_pumps"]].link
+    assert link is not None
+    x, y = link.centre
+    desk.hand.double(x / 10, y / 10)
+    assert session.sheet_id == other

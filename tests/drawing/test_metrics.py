@@ -2,12 +2,7 @@
 
 from __future__ import annotations
 
-import os
-
 import pytest
-
-os.environ.setdefault("QT_QPA_PLATFORM", "offscreen")
-
 from PySide6.QtGui import QFontMetricsF
 from PySide6.QtWidgets import QApplication
 

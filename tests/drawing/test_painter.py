@@ -2,14 +2,11 @@
 
 from __future__ import annotations
 
-import os
 import re
 import sys
 from itertools import combinations, pairwise
 from pathlib import Path as FilePath
 from xml.etree import ElementTree
-
-os.environ.setdefault("QT_QPA_PLATFORM", "offscreen")
 
 import numpy as np
 import pypdf

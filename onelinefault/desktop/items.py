@@ -79,11 +79,12 @@ class PartItem(QGraphicsItem):
         self._rect = rect_of(picture.box, 6)
         self.update()
 
-    def choose(self, chosen: bool) -> None:
+    def choose(self, chosen: bool, *, repaint: bool = True) -> None:
         """Mark as selected or not."""
         if chosen != self.chosen:
             self.chosen = chosen
-            self.update()
+            if repaint:
+                self.update()
 
     def boundingRect(self) -> QRectF:
         """Extent of symbol and words in du."""
@@ -127,11 +128,12 @@ class WireItem(QGraphicsItem):
         self._rect = rect_of(picture.box, 6)
         self.update()
 
-    def choose(self, chosen: bool) -> None:
+    def choose(self, chosen: bool, *, repaint: bool = True) -> None:
         """Mark as selected or not."""
         if chosen != self.chosen:
             self.chosen = chosen
-            self.update()
+            if repaint:
+                self.update()
 
     def boundingRect(self) -> QRectF:
         """Extent in du."""

@@ -3,8 +3,7 @@
 from collections.abc import Mapping
 
 from PySide6.QtCore import QRectF
-from PySide6.QtGui import QPainter
-from PySide6.QtWidgets import QGraphicsItem, QGraphicsScene, QStyleOptionGraphicsItem, QWidget
+from PySide6.QtWidgets import QGraphicsScene
 
 from onelinefault.desktop.items import (
     OVERVIEW_BELOW_SCALE,
@@ -28,21 +27,7 @@ from onelinefault.drawing.sheet import SheetDrawing, SheetPicture
 from onelinefault.model.plant import Plant
 
 _DESK_MARGIN_DU = 400.0
-
-
-class _Group(QGraphicsItem):
-    """Holds all parts and wires, so that they can be hidden at once."""
-
-    def __init__(self) -> None:
-        super().__init__()
-        self.setFlag(QGraphicsItem.GraphicsItemFlag.ItemHasNoContents)
-
-    def boundingRect(self) -> QRectF:
-        """Nothing of its own."""
-        return QRectF()
-
-    def paint(self, painter: QPainter, option: QStyleOptionGraphicsItem, widget: QWidget | None = None) -> None:
-        """Nothing."""
+_MANY = 100
 
 
 class SheetScene(QGraphicsScene):
@@ -60,8 +45,8 @@ class SheetScene(QGraphicsScene):
         self.tag_items: dict[str, TagItem] = {}
         self._page, self._ribbons = ShapesItem(Z_PAGE), ShapesItem(Z_RIBBONS)
         self._over, self._pin, self._guides = ShapesItem(Z_OVER), ShapesItem(Z_PIN), ShapesItem(Z_GUIDES)
-        self._near, self._far = _Group(), OverviewItem()
-        for item in (self._page, self._ribbons, self._near, self._far, self._over, self._pin, self._guides):
+        self._far = OverviewItem()
+        for item in (self._page, self._ribbons, self._far, self._over, self._pin, self._guides):
             self.addItem(item)
         self.turn_to(plant, plant.sheets[0].id)
 
@@ -111,18 +96,23 @@ class SheetScene(QGraphicsScene):
 
     def show_selection(self, selection: frozenset[str]) -> None:
         """Mark what is selected."""
-        for key in selection ^ self._selection:
+        changed = selection ^ self._selection
+        many = len(changed) > _MANY
+        for key in changed:
             item = self.part_items.get(key) or self.wire_items.get(key)
             if item is not None:
-                item.choose(key in selection)
+                item.choose(key in selection, repaint=not many)
+        if many:  # thousands of small dirty places cost more to unite than one whole picture
+            self.update()
         self._selection = selection
         self._refresh_overview()
 
     def show_scale(self, scale: float) -> None:
         """Tell how large things are shown (pixels per du): from far away one item paints the whole sheet."""
         far = scale < OVERVIEW_BELOW_SCALE
-        if far == self._near.isVisible():
-            self._near.setVisible(not far)
+        if far != self._far.isVisible():
+            for item in (*self.part_items.values(), *self.wire_items.values()):
+                item.setVisible(not far)  # each for itself: the scene's index finds only items without a parent quickly
             self._far.setVisible(far)
             self._refresh_overview()
 
@@ -163,7 +153,8 @@ class SheetScene(QGraphicsScene):
             return
         item = self.part_items[key] = PartItem(self.picture.parts[key])
         item.choose(key in self._selection)
-        item.setParentItem(self._near)
+        item.setVisible(not self._far.isVisible())
+        self.addItem(item)
 
     def _renew_wire(self, key: str) -> None:
         item = self.wire_items.get(key)
@@ -172,7 +163,8 @@ class SheetScene(QGraphicsScene):
             return
         item = self.wire_items[key] = WireItem(self.picture.wires[key])
         item.choose(key in self._selection)
-        item.setParentItem(self._near)
+        item.setVisible(not self._far.isVisible())
+        self.addItem(item)
 
     def _show_page(self) -> None:
         self._page.show_shapes(page_shapes(self.plant, self.picture.sheet, self._stamp))

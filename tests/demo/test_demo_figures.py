@@ -18,7 +18,7 @@ from onelinefault.store.plant_file import read_plant
 from onelinefault.studies import arrangement_named, prepare, study_of
 from tests.demo import by_hand
 from tests.oracle.compare import disagreements
-from tests.oracle.phase_domain import solve
+from tests.oracle.phase_domain import Oracle
 
 FOLDERS = sorted(path.parent for path in Path(__file__).parents[2].glob("demo_projects/*/*.plant.json"))
 NAMES = [folder.name for folder in FOLDERS]
@@ -187,10 +187,10 @@ def test_the_phase_domain_solution_agrees_in_the_other_arrangements(name: str, n
 def _compare(name: str, arrangement: str | None, kind: FaultKind) -> None:
     plant = known_to_the_oracle(plant_of(name))
     completed, _ = prepare(plant, arrangement)
-    study = study_of(plant, Case(), arrangement)
+    study, oracle = study_of(plant, Case(), arrangement), Oracle(completed, Case())
     for bus in buses_of(plant):
         fault = Fault(Place(bus.id), kind)
-        assert disagreements(study.fault(fault), solve(completed, fault, Case())) == [], bus.name
+        assert disagreements(study.fault(fault), oracle.fault(fault)) == [], bus.name
 
 
 def test_the_winder_adds_its_limit_at_a_bus_without_voltage() -> None:

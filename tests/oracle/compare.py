@@ -8,7 +8,7 @@ from onelinefault.engine.results import FaultResult
 from tests.oracle.circuit import ComplexArray
 from tests.oracle.phase_domain import Answer
 
-TOLERANCE = 1e-8  # of the largest of its kind; the oracle's dense solve over five voltage levels is good to about 1e-10
+TOLERANCE = 1e-8  # of the largest of its kind; plants of five voltage levels agree to about 1e-9
 TerminalKey = tuple[str, str]
 Gap = tuple[float, str]
 
@@ -38,12 +38,18 @@ def current_gaps(result: FaultResult, answer: Answer) -> Iterator[Gap]:
 
 
 def _scale_ka(result: FaultResult, answer: Answer, kv: Mapping[TerminalKey, float]) -> float:
-    """Largest current anywhere, brought to the fault's voltage; at least a hundredth of a three-phase fault's."""
-    volts = float(result.prefault_kv / np.sqrt(3))
+    """Largest current anywhere, brought to the fault's voltage.
+
+    At least a hundredth of a three-phase fault's and a thousandth of the strongest source's: where nothing flows,
+    rounding is measured by these.
+    """
+    network, volts = result.network, float(result.prefault_kv / np.sqrt(3))
     shares = [float(abs(ampere).max()) * kv[key] / volts for key, ampere in answer.terminal_ka.items()]
     z1 = result.z_ohm[0]
     assert z1 is not None
-    return max(float(abs(answer.fault_ka).max()), *shares, 1e-2 * volts / abs(z1))
+    sources = [float(abs(network.y_shunt[source.shunt, 0])) for source in network.sources]
+    strongest = max(sources) * network.base_mva / 3 / volts
+    return max(float(abs(answer.fault_ka).max()), *shares, 1e-2 * volts / abs(z1), 1e-3 * strongest)
 
 
 def _voltage_gaps(result: FaultResult, answer: Answer) -> Iterator[Gap]:

@@ -17,14 +17,19 @@ from onelinefault.model.transforming import Transformer
 from tests.oracle.circuit import ComplexArray
 
 A120 = complex(-0.5, math.sqrt(3) / 2)
-# columns: zero, positive, negative
-FORTESCUE = np.array([[1, 1, 1], [1, A120**2, A120], [1, A120, A120**2]])
 
 
 def phase_matrix(z1: complex, z2: complex, z0: complex) -> ComplexArray:
-    """The 3×3 matrix of phases a, b, c of three alike coils with these sequence impedances."""
-    matrix: ComplexArray = FORTESCUE @ np.diag([z0, z1, z2]) @ np.linalg.inv(FORTESCUE)
-    return matrix
+    """The 3×3 matrix of phases a, b, c of three alike coils with these sequence impedances.
+
+    Alike to the last digit: an unevenness of 1e-16 would already drive a residual current that lifts a network held
+    only by its capacitance to earth.
+    """
+    own = (z0 + z1 + z2) / 3
+    ahead, behind = (z0 + A120 * z1 + A120**2 * z2) / 3, (z0 + A120**2 * z1 + A120 * z2) / 3
+    if z1 == z2:
+        ahead = behind = (z0 - z1) / 3
+    return np.array([[own, ahead, behind], [behind, own, ahead], [ahead, behind, own]])
 
 
 def number(part: Part, name: str, unit: str) -> float:

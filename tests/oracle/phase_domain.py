@@ -13,12 +13,13 @@ the sum of the three phase voltages is zero.
 
 from collections.abc import Mapping
 from dataclasses import dataclass
+from functools import cached_property
 
 import numpy as np
 
 from onelinefault.engine.case import Case
 from onelinefault.model.conductors import Reactor
-from onelinefault.model.fault import Fault, FaultKind
+from onelinefault.model.fault import Fault, FaultKind, Place
 from onelinefault.model.part import Part
 from onelinefault.model.plant import Plant
 from onelinefault.model.sources import InductionMotor, Supply, SynchronousGenerator, SynchronousMotor
@@ -171,19 +172,25 @@ class _Build:
 _Sources = Mapping[str, ComplexArray]  # part → emf of its phases; machines that are not there do not feed
 
 
-def solve(plant: Plant, fault: Fault, case: Case) -> Answer:
-    """The short circuit of a completed plant. Nodes that no branch joins to the fault are left out."""
-    place = fault.place
-    split = (place.part, place.fraction) if place.fraction is not None and 0 < place.fraction < 1 else None
-    end = {None: place.terminal, 0.0: "a", 1.0: "b"}.get(place.fraction, "a")  # at an end: outside the line's terminal
-    task = _Task(Wiring(plant), case, split, (place.part, end))
-    before = task.without_current()
-    machines: _Sources = {part.id: np.zeros(3, dtype=complex) for part in task.parts if isinstance(part, MACHINES)}
-    if case.prefault == "nominal":
-        emf_kv = _potentials(before.x, before.build.place(task.start))
-        return _answer(task, before, machines, fault, emf_kv)
-    before, machines = task.unloaded(before)
-    return _answer(task, before, machines, fault, np.zeros(3, dtype=complex))
+class Oracle:
+    """A completed plant in a case, ready for faults. Nodes that no branch joins to the fault are left out."""
+
+    def __init__(self, plant: Plant, case: Case) -> None:
+        self.wiring, self.case = Wiring(plant), case
+        self._tasks: dict[Place, _Task] = {}
+
+    def fault(self, fault: Fault) -> Answer:
+        """The short circuit, solved in phases."""
+        if fault.place not in self._tasks:
+            self._tasks[fault.place] = _Task.of(self.wiring, self.case, fault.place)
+        task = self._tasks[fault.place]
+        if self.case.prefault == "nominal":
+            build = task.without_current.build
+            machines = {part.id: np.zeros(3, dtype=complex) for part in task.parts if isinstance(part, MACHINES)}
+            emf_kv = _potentials(task.without_current.x, build.place(task.start))
+            return _answer(task, task.without_current, machines, fault, emf_kv)
+        before, sources = task.unloaded
+        return _answer(task, before, sources, fault, np.zeros(3, dtype=complex))
 
 
 def _answer(task: "_Task", before: "_Before", sources: _Sources, fault: Fault, emf_kv: ComplexArray) -> Answer:
@@ -223,6 +230,13 @@ class _Task:
         self.parts = wiring.reached_from(start)
         self.factor = wiring.plant.document.prefault_pu
 
+    @classmethod
+    def of(cls, wiring: Wiring, case: Case, place: Place) -> "_Task":
+        """For a fault's place. At a line's very end the fault is outside the line's terminal."""
+        split = (place.part, place.fraction) if place.fraction is not None and 0 < place.fraction < 1 else None
+        end = {None: place.terminal, 0.0: "a", 1.0: "b"}.get(place.fraction, "a")
+        return cls(wiring, case, split, (place.part, end))
+
     def built(self, sources: _Sources) -> _Build:
         """The circuit of everything the fault's node hangs together with."""
         build = _Build(self.wiring, self.case, self.split, sources)
@@ -233,6 +247,7 @@ class _Task:
             build.add(part)
         return build
 
+    @cached_property
     def without_current(self) -> _Before:
         """Potentials without any current: a balanced emf at the fault's place, every other source taken away."""
         build = self.built({})
@@ -241,14 +256,15 @@ class _Task:
             build.circuit.coil(pin, Pin(None), 0j, kv * ohms.A120 ** (-k))
         return _Before(build.solved(), build)
 
-    def unloaded(self, ideal: _Before) -> tuple[_Before, _Sources]:
+    @cached_property
+    def unloaded(self) -> tuple[_Before, _Sources]:
         """The plant with its sources' emf and no motors, and the emf of all: a motor's is the voltage it found.
 
         An emf has the node's nominal voltage times the factor, at the angle that the windings give it.
         """
         machines = [part for part in self.parts if isinstance(part, MACHINES)]
         driving = [part for part in machines if not isinstance(part, MOTORS)] or machines
-        emf = {part.id: self._emf(part, ideal) for part in driving}
+        emf = {part.id: self._emf(part, self.without_current) for part in driving}
         whole = _Task(self.wiring, self.case, None, self.start).built(emf)  # the line is cut only by the fault
         x = whole.solved()
         found = {part.id: _potentials(x, whole.node((part.id, part.terminals[0].name))) for part in machines}

@@ -12,7 +12,7 @@ from onelinefault.engine.case import Case
 from onelinefault.engine.study import Study
 from onelinefault.model.fault import Fault, FaultKind, Place
 from tests.oracle.compare import TOLERANCE, current_gaps, disagreements
-from tests.oracle.phase_domain import solve
+from tests.oracle.phase_domain import Oracle
 from tests.oracle.plants import Problem, problems
 from tests.oracle.sketch import Sketch
 
@@ -24,10 +24,10 @@ EXAMPLES = int(os.environ.get("ONELINEFAULT_EXAMPLES", "40"))
     max_examples=EXAMPLES, deadline=None, suppress_health_check=[HealthCheck.too_slow, HealthCheck.data_too_large]
 )
 def test_engine_and_oracle_agree_on_random_plants(problem: Problem) -> None:
-    study = Study(problem.plant, problem.case)
+    study, oracle = Study(problem.plant, problem.case), Oracle(problem.plant, problem.case)
     for fault in problem.faults:
         note(str(fault))
-        assert disagreements(study.fault(fault), solve(problem.plant, fault, problem.case)) == []
+        assert disagreements(study.fault(fault), oracle.fault(fault)) == []
 
 
 @pytest.mark.parametrize("kind", list(FaultKind))
@@ -46,6 +46,6 @@ def test_transformers_of_unlike_taps_in_parallel(kind: FaultKind, group: str) ->
     for bus in (high, low):
         fault = Fault(Place(*bus), kind)
         loaded = Case(prefault="no-load")
-        assert disagreements(Study(sketch.plant, loaded).fault(fault), solve(sketch.plant, fault, loaded)) == []
-        result, answer = Study(sketch.plant, Case()).fault(fault), solve(sketch.plant, fault, Case())
+        assert disagreements(Study(sketch.plant, loaded).fault(fault), Oracle(sketch.plant, loaded).fault(fault)) == []
+        result, answer = Study(sketch.plant, Case()).fault(fault), Oracle(sketch.plant, Case()).fault(fault)
         assert [sentence for gap, sentence in current_gaps(result, answer) if gap > TOLERANCE] == []

@@ -12,7 +12,7 @@ from onelinefault.model.fault import Fault, FaultKind, Place
 from onelinefault.model.plant import Plant
 from tests.oracle.circuit import Circuit, Pin
 from tests.oracle.ohms import A120
-from tests.oracle.phase_domain import solve
+from tests.oracle.phase_domain import Oracle
 from tests.oracle.plants import Problem, problems
 from tests.oracle.sketch import Sketch, TerminalKey
 from tests.oracle.wiring import Wiring
@@ -52,7 +52,7 @@ def test_closed_forms_at_a_supply() -> None:
     volts, zf, zg = 10 / math.sqrt(3), 0.3 + 0.1j, 0.5 + 0j
 
     def current(kind: FaultKind) -> complex:
-        answer = solve(sketch.plant, Fault(Place(*bus), kind, zf_ohm=zf, zg_ohm=zg), CASE)
+        answer = Oracle(sketch.plant, CASE).fault(Fault(Place(*bus), kind, zf_ohm=zf, zg_ohm=zg))
         return complex(answer.fault_ka["abc".index("b" if kind is not FaultKind.LINE_TO_EARTH else "a")])
 
     # Anderson, Analysis of Faulted Power Systems, chapter 2: the four closed forms
@@ -69,10 +69,10 @@ def test_closed_forms_at_a_supply() -> None:
 @pytest.mark.parametrize("clock", [1, 3, 5, 7, 9, 11])
 def test_delta_lines_carry_1_1_0_and_1_2_1(clock: int) -> None:
     plant, _, low, part = behind_transformer(f"Dyn{clock}")
-    earth = solve(plant, Fault(Place(*low), FaultKind.LINE_TO_EARTH, "b"), CASE)
+    earth = Oracle(plant, CASE).fault(Fault(Place(*low), FaultKind.LINE_TO_EARTH, "b"))
     lines = np.sort(abs(earth.terminal_ka[part, "high"]))
     assert lines == pytest.approx(np.array([0, 1, 1]) * abs(earth.fault_ka[1]) * 0.04 / math.sqrt(3), abs=1e-12)
-    two = solve(plant, Fault(Place(*low), FaultKind.LINE_TO_LINE, "ca"), CASE)
+    two = Oracle(plant, CASE).fault(Fault(Place(*low), FaultKind.LINE_TO_LINE, "ca"))
     lines = np.sort(abs(two.terminal_ka[part, "high"]))
     assert lines == pytest.approx(np.array([1, 1, 2]) * abs(two.fault_ka[0]) * 0.04 / math.sqrt(3), abs=1e-12)
 
@@ -80,7 +80,7 @@ def test_delta_lines_carry_1_1_0_and_1_2_1(clock: int) -> None:
 @pytest.mark.parametrize("group", GROUPS)
 def test_clock_numbers_are_those_of_the_nameplate(group: str) -> None:
     plant, high, low, _ = behind_transformer(group)
-    before = solve(plant, Fault(Place(*high)), CASE).before_kv
+    before = Oracle(plant, CASE).fault(Fault(Place(*high))).before_kv
     # IEC 60076-1: the low side lags by the clock number times 30 degrees
     clock = int("".join(c for c in group if c.isdigit()))
     lag = cmath.exp(-1j * math.radians(30 * clock))
@@ -90,7 +90,7 @@ def test_clock_numbers_are_those_of_the_nameplate(group: str) -> None:
 @pytest.mark.parametrize(("clock", "sign"), [(0, 1), (2, -1), (4, 1), (6, -1), (8, 1), (10, -1)])
 def test_half_of_the_star_star_clocks_reverse_the_zero_sequence(clock: int, sign: int) -> None:
     plant, high, low, part = behind_transformer(f"YNyn{clock}")
-    answer = solve(plant, Fault(Place(*low), FaultKind.LINE_TO_EARTH), CASE)
+    answer = Oracle(plant, CASE).fault(Fault(Place(*low), FaultKind.LINE_TO_EARTH))
     residual_high = answer.terminal_ka[part, "high"].sum()
     assert residual_high == pytest.approx(-sign * 0.04 * answer.terminal_ka[part, "low"].sum(), rel=1e-9)
     assert abs(answer.voltage_kv[high].sum()) > 0.1
@@ -106,7 +106,7 @@ def test_star_star_delta_feeds_an_earth_fault_from_its_closed_delta() -> None:
         impedance_high_low="17", impedance_medium_low="6", base_high_medium="20", base_high_low="20",
         base_medium_low="20", vector_group="YNyn0d11", neutral_high="solid", neutral_medium="isolated",
     )  # fmt: skip
-    answer = solve(sketch.plant, Fault(Place(*high), FaultKind.LINE_TO_EARTH), CASE)
+    answer = Oracle(sketch.plant, CASE).fault(Fault(Place(*high), FaultKind.LINE_TO_EARTH))
     assert abs(answer.fault_ka[0]) > 0.5
     assert answer.earth_ka[part, "high"] == pytest.approx(-answer.fault_ka[0], rel=1e-9)
     assert np.allclose(answer.terminal_ka[part, "low"], 0, atol=1e-10)
@@ -114,14 +114,14 @@ def test_star_star_delta_feeds_an_earth_fault_from_its_closed_delta() -> None:
 
 def test_unearthed_network_gives_no_current_and_full_displacement() -> None:
     plant, _, low, _ = behind_transformer("Dyn11", neutral_low="isolated")
-    answer = solve(plant, Fault(Place(*low), FaultKind.LINE_TO_EARTH), CASE)
+    answer = Oracle(plant, CASE).fault(Fault(Place(*low), FaultKind.LINE_TO_EARTH))
     assert abs(answer.fault_ka).max() < 1e-12
     assert abs(answer.voltage_kv[low]) == pytest.approx(np.array([0, 0.4, 0.4]), abs=1e-12)
 
 
 def test_unfaulted_unearthed_side_has_no_zero_sequence_voltage() -> None:
     plant, high, low, _ = behind_transformer("YNd5")
-    answer = solve(plant, Fault(Place(*high), FaultKind.LINE_TO_EARTH), CASE)
+    answer = Oracle(plant, CASE).fault(Fault(Place(*high), FaultKind.LINE_TO_EARTH))
     assert abs(answer.voltage_kv[low].sum()) < 1e-12
 
 
@@ -139,7 +139,7 @@ def test_a_current_forced_against_kirchhoff_is_noticed() -> None:
 @settings(max_examples=15, deadline=None, suppress_health_check=[HealthCheck.too_slow, HealthCheck.data_too_large])
 def test_kirchhoff_holds_at_every_node_of_random_plants(problem: Problem) -> None:
     fault = problem.faults[0]
-    answer = solve(problem.plant, fault, problem.case)
+    answer = Oracle(problem.plant, problem.case).fault(fault)
     wiring = Wiring(problem.plant)
     sums: dict[TerminalKey, list[np.ndarray]] = {}
     for key, ampere in answer.terminal_ka.items():

@@ -203,7 +203,8 @@ class Row(QWidget):
         self.label.setBuddy(self.editor)
 
     def _make_editor(self) -> QWidget:
-        raise NotImplementedError
+        """An empty place: each kind of row puts its own editor there."""
+        return QWidget()
 
     def show_state(self, state: RowState) -> None:
         """Show another state of the same row; what was said about an entry is no longer said."""

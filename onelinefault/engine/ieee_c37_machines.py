@@ -80,7 +80,7 @@ def machine_multiplier(
     """Multiplier of a machine and the reactance it acts on.
 
     thirty_cycle_factor: of a generator's X′d after 30 cycles, an input of the study with its default in sight.
-    Hydro machines without dampers: 0.75 of X′d (one transcription prints X″d; the table of IEEE 141 says X′d).
+    Hydro machines without dampers: 0.75 of X′d (one reprint shows X″d; the table of IEEE 141 says X′d).
     Source: IEEE 551-2006 table 9-1, IEEE 141-1993 tables 4-1 and 4-2; confirmed, 30 cycles from memory.
     """
     factor = _FACTORS[machine][list(DutyNetwork).index(network)]

@@ -138,6 +138,7 @@ def row_of(study: Study, result: FaultResult) -> BusRow:
         z2_ohm=z2,
         z0_ohm=z0,
         assumed=study.assumed.get(int(study.network.island[result.node]), ()),
+        figures=result.figures,
     )
 
 

@@ -96,7 +96,8 @@ def spot_along(equations: Equations, split: SplitBranch, prefault: Prefault, fra
     to_all[:, :, POSITIVE] = equations.converter_columns
     converter_columns = split.updated(to_all, closed)[:, :, POSITIVE]
     before = _before(split, prefault, closed)
-    emf = prefault.factor if prefault.no_load is None else before[list(split.ends)] @ split.shares[POSITIVE]
+    nominal = prefault.factor[split.ends[1]]
+    emf = nominal if prefault.no_load is None else before[list(split.ends)] @ split.shares[POSITIVE]
     return Spot(
         node=split.ends[0] if fraction <= 0.5 else split.ends[1],
         z=z,

@@ -19,7 +19,7 @@ def assumed_names(plant: Plant, network: Network) -> dict[int, tuple[str, ...]]:
     islands = _islands_of_parts(network)
     found: dict[int, list[str]] = {}
     for part_id, part in plant.parts.items():
-        if part_id in islands and rests_on_assumptions(part):
+        if part_id in islands and (rests_on_assumptions(part) or network.method.assumes(part)):
             found.setdefault(islands[part_id], []).append(part.name or part.id)
     return {island: tuple(names) for island, names in found.items()}
 

@@ -4,10 +4,11 @@ from dataclasses import dataclass, field
 
 import numpy as np
 
-from onelinefault.engine.case import Case
+from onelinefault.engine.case import WHOLE, Case, View
 from onelinefault.engine.checks import check_islands, check_loops, check_parts
 from onelinefault.engine.checks_motors import check_motors
 from onelinefault.engine.displacement import carry, wrapped
+from onelinefault.engine.methods import Situation, method_for
 from onelinefault.engine.network import (
     ComplexArray,
     Converter,
@@ -15,6 +16,7 @@ from onelinefault.engine.network import (
     Network,
     NeutralTerm,
     Node,
+    PartCorrection,
     Source,
     TerminalKey,
 )
@@ -31,17 +33,20 @@ SAME_ANGLE_DEG = 1e-6
 SAME_LOG_RATIO = 0.005  # loops of transformers may differ by so much in ratio without a remark
 
 
-def build_network(plant: Plant, case: Case) -> Network:
-    """The network of a plant whose missing ratings were completed, in one case.
+def build_network(plant: Plant, case: Case, view: View = WHOLE) -> Network:
+    """The network of a plant whose missing ratings were completed, in one case, seen in one of its views.
 
-    What cannot be calculated is left out, with an error finding that names the part, the reason and the remedy. Never
-    raises for what a user can draw or type.
+    All views of a case have the same nodes. What cannot be calculated is left out, with an error finding that names the
+    part, the reason and the remedy. Never raises for what a user can draw or type; raises StudyError for a case that
+    names no method.
     """
     document = plant.document
-    setting = Setting(document.base_mva, document.frequency_hz, case)
     topology = topology_of(plant)
     voltages = nominal_voltages(topology)
+    method = method_for(Situation(case, view, topology, voltages, document.frequency_hz))
+    setting = Setting(document.base_mva, document.frequency_hz, case, method)
     rows = _Rows.of(topology, voltages)
+    rows.findings += method.findings
     rows.findings += [*voltages.findings, *check_parts(topology, voltages)]
     rows.findings += check_motors(topology, voltages.zone)
     for part in topology.parts.values():
@@ -73,6 +78,7 @@ class _Rows:
     sources: list[Source] = field(default_factory=list)
     converters: list[Converter] = field(default_factory=list)
     neutral_terms: list[NeutralTerm] = field(default_factory=list)
+    corrections: list[PartCorrection] = field(default_factory=list)
 
     @classmethod
     def of(cls, topology: Topology, voltages: NominalVoltages) -> "_Rows":
@@ -95,6 +101,7 @@ class _Rows:
             self.findings.append(left_out(part, "bad-rating", f"{error}", remedy).finding)
             return
         self.findings += stamps.findings
+        self.corrections += [PartCorrection(part.id, c.name, c.value) for c in stamps.corrections if c.name]
         self._add_star_points(part, stamps)
         self._add_branches(part, stamps)
         self._add_shunts(part, stamps)
@@ -133,7 +140,9 @@ class _Rows:
             self.shunt_terminals.append((part.id, shunt.terminal))
         for converter in stamps.converters:
             node = self.topology.node(part.id, converter.terminal)
-            self.converters.append(Converter(part.id, node, converter.limit_pu, converter.angle_deg))
+            self.converters.append(
+                Converter(part.id, node, converter.limit_pu, converter.angle_deg, converter.constant)
+            )
 
 
 def _assembled(rows: _Rows, setting: Setting) -> Network:
@@ -145,6 +154,7 @@ def _assembled(rows: _Rows, setting: Setting) -> Network:
     island = components(n, from_node, to_node)
     fed = [s.node for s in rows.sources] + [c.node for c in rows.converters]
     live = np.isin(island, island[_integers(fed)])
+    driving = setting.method.driving([node.nominal_kv for node in rows.nodes])
     rows.findings += check_loops(topology.parts, rows.branch_parts, turned, scaled)
     rows.findings += check_islands(topology, rows.nodes, island, live, rows.sources, rows.converters)
     return Network(
@@ -172,6 +182,9 @@ def _assembled(rows: _Rows, setting: Setting) -> Network:
         joints=topology.joints,
         neutral_terms=tuple(rows.neutral_terms),
         findings=tuple(rows.findings),
+        method=setting.method,
+        driving=None if driving is None else np.array(driving, np.float64),
+        corrections=tuple(rows.corrections),
     )
 
 

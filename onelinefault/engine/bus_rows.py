@@ -24,13 +24,15 @@ def bus_rows(
     prefault: Prefault,
     kinds: Sequence[FaultKind],
     assumed: Mapping[int, tuple[str, ...]],
+    of: Sequence[Bus] | None = None,
 ) -> list[BusRow]:
     """Rows of all buses with a length in the plant's order, each with all kinds in their order; bolted, usual phases.
 
-    A bus without a source or out of service has zero currents and no impedances. assumed: names by island.
+    A bus without a source or out of service has zero currents and no impedances. assumed: names by island. of: some
+    buses in place of all.
     """
     network = equations.network
-    buses = [part for part in plant.parts.values() if isinstance(part, Bus) and part.length > 0]
+    buses = buses_of(plant) if of is None else of
     at = [network.node_of.get((bus.id, "bar"), -1) for bus in buses]
     is_live = [node >= 0 and bool(network.live[node]) for node in at]
     live = [(bus, node) for bus, node, feeds in zip(buses, at, is_live, strict=True) if feeds]
@@ -42,6 +44,11 @@ def bus_rows(
         for kind in kinds
     ]
     return [next(rows[0] if feeds else rows[1]) for feeds in is_live for rows in tables]
+
+
+def buses_of(plant: Plant) -> list[Bus]:
+    """All buses with a length in the plant's order."""
+    return [part for part in plant.parts.values() if isinstance(part, Bus) and part.length > 0]
 
 
 def _dead_row(network: Network, bus: Bus, node: int, kind: FaultKind) -> BusRow:

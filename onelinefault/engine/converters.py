@@ -9,6 +9,9 @@ The reference angle is that of V while at least half the voltage is left. Below,
 because a converter cannot follow the angle of a voltage that vanishes: it keeps the one it knew (voltage memory). Law
 and figures are common practice (reactive-current support of grid codes), not a standard's.
 
+A method may take converters as constant currents instead (IEC 60909-0, 6.9): each feeds its limit, and what it adds to
+the fault current, Z_ij·J_j/Z_i in three-phase faults, is in phase with the rest, so that magnitudes add up.
+
 The rest of the plant is linear: with Thévenin's voltage and impedances at the fault, each converter's voltage is an
 affine function of all currents J. So only J is iterated on, at most 50 rounds: fixed point, each step damped by the
 converters' own loop gain and corrected by what the last two rounds taught. Currents are per unit; k faults at once, c
@@ -38,11 +41,15 @@ SETTLED = 1e-9
 
 @dataclass(frozen=True, eq=False)
 class ConverterGroup:
-    """All converters: node, limit (per unit), factor that turns a unit reference into the current's direction, (c,)."""
+    """All converters: node, limit (per unit), factor that turns a unit reference into the current's direction, (c,).
+
+    constant: they feed their limits whatever the voltage, and what they add to the fault current is in phase with it.
+    """
 
     node: IntArray
     limit: FloatArray
     direction: ComplexArray
+    constant: bool = False
 
     @classmethod
     def of(cls, network: Network) -> "ConverterGroup":
@@ -53,6 +60,7 @@ class ConverterGroup:
             np.array([c.node for c in converters], np.int64),
             np.array([c.limit_pu for c in converters], np.float64),
             np.exp(-1j * np.deg2rad(angle)),
+            any(c.constant for c in converters),
         )
 
     @property
@@ -109,7 +117,9 @@ def settle(
     pull = unit_current[:, POSITIVE, None] * to_converters  # change of the converters' voltage per volt of emf
     fed = np.zeros(to_converters.shape, np.complex128)
     settled = np.ones(fed.shape, np.bool_)
-    if group.count:
+    if group.constant:
+        fed = group.limit * _unit(to_converters).conj() * _unit(emf)[:, None]
+    elif group.count:
         gain = _gain(group.limit / np.maximum(abs(before), 1e-3), between, pull, to_converters)
         past: list[tuple[ComplexArray, ComplexArray]] = []
         for _ in range(ROUNDS):

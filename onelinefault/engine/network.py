@@ -18,6 +18,7 @@ from dataclasses import dataclass
 import numpy as np
 from numpy.typing import NDArray
 
+from onelinefault.engine.method import CLASSICAL, Method
 from onelinefault.model.findings import Finding
 
 ComplexArray = NDArray[np.complex128]
@@ -54,12 +55,16 @@ class Source:
 
 @dataclass(frozen=True, slots=True)
 class Converter:
-    """A limited current source. limit_pu: largest current on the plant's base; angle_deg: current lags by this."""
+    """A limited current source. limit_pu: largest current on the plant's base; angle_deg: current lags by this.
+
+    constant: it feeds its limit whatever the voltage, in phase with the fault current (IEC 60909).
+    """
 
     part: str
     node: int
     limit_pu: float
     angle_deg: float
+    constant: bool = False
 
 
 @dataclass(frozen=True)
@@ -71,7 +76,8 @@ class Network:
     to earth in a star point is factor · 3 I0 of that element's terminal (kA on the side's own base).
     displacement_deg: angle by which positive-sequence quantities at the node lead those of its island's reference node.
     live: whether any source or converter feeds the node. joints: closed devices and wires, for the currents inside
-    nodes.
+    nodes. method: what decided the impedances. driving: voltage that drives a fault at the node over its nominal
+    voltage, None: the plant's own factor. corrections: factors of the method on the parts' impedances.
     """
 
     base_mva: float
@@ -98,6 +104,9 @@ class Network:
     joints: tuple["Joint", ...]
     neutral_terms: tuple["NeutralTerm", ...] = ()
     findings: tuple[Finding, ...] = ()
+    method: Method = CLASSICAL
+    driving: FloatArray | None = None  # (n,)
+    corrections: tuple["PartCorrection", ...] = ()
 
     @property
     def nominal_kv(self) -> FloatArray:
@@ -115,6 +124,15 @@ class Network:
         """Base impedance of each node in ohm, shape (n,)."""
         ohm: FloatArray = self.nominal_kv**2 / self.base_mva
         return ohm
+
+
+@dataclass(frozen=True, slots=True)
+class PartCorrection:
+    """A factor of the method on one part, "K_T" say."""
+
+    part: str
+    name: str
+    value: float
 
 
 @dataclass(frozen=True, slots=True)

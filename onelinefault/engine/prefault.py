@@ -83,22 +83,28 @@ def _along_tree(n: int, one: IntArray, other: IntArray, t: FloatArray, root: Int
 
 @dataclass(frozen=True, eq=False)
 class Prefault:
-    """Positive-sequence voltages before a fault, per unit. factor: multiple of nominal at the fault or of every emf.
+    """Positive-sequence voltages before a fault, per unit.
+
+    factor (n,): multiple of nominal at a fault at each node, or of every emf.
 
     no_load (n,): solved voltages, None in the nominal way. emf (s,): voltage behind each shunt in the no-load way.
     """
 
     network: Network
-    factor: float
+    factor: FloatArray
     potentials: Potentials
     no_load: ComplexArray | None = None
     emf: ComplexArray | None = None
 
     @classmethod
     def nominal(cls, network: Network, factor: float) -> "Prefault":
-        """The nominal way, see the module's text. Islands other than the fault's stand at the factor at a source."""
+        """The nominal way, see the module's text. Islands other than the fault's stand at the factor at a source.
+
+        Where the method says what drives a fault, that goes before the plant's factor.
+        """
         feeding = [source.node for source in network.sources] + [c.node for c in network.converters]
-        return cls(network, factor, Potentials.of(network, POSITIVE, feeding))
+        factors = np.full(len(network.nodes), factor) if network.driving is None else network.driving
+        return cls(network, factors, Potentials.of(network, POSITIVE, feeding))
 
     @classmethod
     def from_sources(cls, network: Network, factor: float, pattern: Pattern, motors: Collection[str]) -> "Prefault":
@@ -121,19 +127,20 @@ class Prefault:
         solved = factorise(pattern, diagonal, transfer, earthed).solve(injected)[:, 0, 0]
         voltage = np.where(earthed[:, 0], solved, nominal._anywhere)
         emf = np.where(driving, factor, np.where(is_source, voltage[network.shunt_node], 0.0))
-        return cls(network, factor, nominal.potentials, voltage, emf)
+        return cls(network, nominal.factor, nominal.potentials, voltage, emf)
 
     @cached_property
     def _anywhere(self) -> ComplexArray:
         """Nominal voltages with every component's root at the factor, shape (n,)."""
-        return np.where(self.network.live, self.factor * self.potentials.ratio, 0.0).astype(np.complex128)
+        factor = self.factor[self.potentials.root[self.potentials.component]]
+        return np.where(self.network.live, factor * self.potentials.ratio, 0.0).astype(np.complex128)
 
     def at(self, nodes: IntArray) -> ComplexArray:
         """The voltage at each of these nodes for a fault there, shape (k,)."""
         if self.no_load is not None:
             solved: ComplexArray = self.no_load[nodes]
             return solved
-        return np.where(self.network.live[nodes], self.factor, 0.0).astype(np.complex128)
+        return np.where(self.network.live[nodes], self.factor[nodes], 0.0).astype(np.complex128)
 
     def at_others(self, nodes: IntArray, others: IntArray) -> ComplexArray:
         """The voltage at each other node for a fault at each node, shape (k, o)."""
@@ -142,7 +149,7 @@ class Prefault:
         component, ratio = self.potentials.component, self.potentials.ratio
         same = (component[nodes][:, None] == component[others]) & self.network.live[others]
         voltage: ComplexArray = np.where(
-            same, self.factor * ratio[others] / ratio[nodes][:, None], self._anywhere[others]
+            same, self.factor[nodes][:, None] * ratio[others] / ratio[nodes][:, None], self._anywhere[others]
         )
         return voltage
 

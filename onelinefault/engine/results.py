@@ -10,6 +10,7 @@ from dataclasses import dataclass, field
 import numpy as np
 
 from onelinefault.engine.case import Case
+from onelinefault.engine.derived import Figures
 from onelinefault.engine.network import ComplexArray, FloatArray, Network, TerminalKey
 from onelinefault.model.fault import Fault
 from onelinefault.model.findings import Finding
@@ -40,6 +41,7 @@ class FaultResult:
     current flows through, not-a-number where none flows. peak_ka: largest phase, asymmetrical peak at half a cycle.
     findings: what is to be said about this fault, such as typical or guessed data that it rests on. fault_kv:
     phase-to-earth voltages at the fault itself, shape (3,). A fault along a branch has the nearer end as its node.
+    figures: what the method derives besides (its peak current is then peak_ka); None: nothing.
     """
 
     fault: Fault
@@ -63,6 +65,7 @@ class FaultResult:
     sources: tuple[SourceShare, ...]
     findings: tuple[Finding, ...] = ()
     fault_kv: ComplexArray = field(default_factory=lambda: np.zeros(3, np.complex128))
+    figures: Figures | None = None
 
     @property
     def z_pu(self) -> tuple[complex | None, complex | None, complex | None]:
@@ -86,7 +89,10 @@ class FaultResult:
 
 @dataclass(frozen=True, slots=True)
 class BusRow:
-    """One bus and one kind of fault, as the tables show it. Impedances as (r, x) in ohm; None where open."""
+    """One bus and one kind of fault, as the tables show it. Impedances as (r, x) in ohm; None where open.
+
+    figures: as in FaultResult.
+    """
 
     bus: str
     part: str
@@ -103,3 +109,4 @@ class BusRow:
     z2_ohm: tuple[float, float] | None
     z0_ohm: tuple[float, float] | None
     assumed: tuple[str, ...] = ()
+    figures: Figures | None = None

@@ -37,9 +37,11 @@ MOTORS = (InductionMotor, SynchronousMotor)
 def in_network(part: Part, setting: Setting) -> bool:
     """Whether the part puts anything into the network: in service, of such a kind, and no motor when none is asked.
 
-    Loads and capacitors are left out (the classical method).
+    Loads and capacitors are left out (all methods). The method may leave out more.
     """
-    return part.in_service and type(part) in _MODELS and (setting.case.motors or not isinstance(part, MOTORS))
+    if not part.in_service or type(part) not in _MODELS:
+        return False
+    return (setting.case.motors or not isinstance(part, MOTORS)) and setting.method.takes(part)
 
 
 def stamps_of(part: Part, node_kv: Kilovolts, setting: Setting) -> Stamps:

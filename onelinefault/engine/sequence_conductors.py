@@ -84,7 +84,9 @@ def temperature_factor(part: Line, level: str) -> float:
 
 
 def _per_km(part: Line, setting: Setting) -> _PerKm:
-    warmth = temperature_factor(part, setting.case.level)
+    warmth = setting.method.warmth(part)
+    if warmth is None:
+        warmth = temperature_factor(part, setting.case.level)
     by_geometry = isinstance(part, OverheadLine) and (part.r_per_length is None or part.x_per_length is None)
     if by_geometry and isinstance(part.geometry, LineGeometry):  # type: ignore[union-attr]
         return _from_geometry(part, warmth, setting)  # type: ignore[arg-type]
@@ -123,7 +125,7 @@ def _from_geometry(part: OverheadLine, warmth: float, setting: Setting) -> _PerK
 
 def _half_charging(part: Line, total_km: float, setting: Setting) -> tuple[Triple, tuple[Finding, ...]]:
     """½ jωC of the whole line in siemens for each sequence, when charging is asked for."""
-    if not setting.case.charging or isinstance(part, Busway):
+    if not (setting.case.charging and setting.method.charging) or isinstance(part, Busway):
         return NOTHING, ()
     c1 = optional(part, "capacitance", "uF/km")
     c0 = optional(part, "zero_sequence_capacitance", "uF/km")

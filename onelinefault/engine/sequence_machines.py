@@ -44,21 +44,31 @@ def synchronous_mva(part: Synchronous) -> float:
 
 
 def synchronous_stamps(part: Synchronous, kv: float, setting: Setting) -> Stamps:
-    """Z1 = R + jX (X″d, X′d or Xd by the moment), Z2 = R + jX2, Z0 = R + jX0 + 3 Zn (IEC 60909-0, 6.6, without K)."""
+    """Z1 = R + jX (X″d, X′d or Xd by the moment), Z2 = R + jX2, Z0 = R + jX0 + 3 Zn.
+
+    A method's factor is on all of them, but not on 3 Zn (IEC 60909-0, 6.6; classical: no factor).
+    """
     own_kv = in_unit(part, "rated_voltage", "kV")
     own_ohm = own_kv**2 / synchronous_mva(part)
     base_ohm = setting.base_ohm(kv)
-    x1, findings = _positive_ohm(part, own_ohm, _REACTANCE_AT[setting.case.moment])
+    machine = setting.method.synchronous(part, subtransient_ohm(part, own_ohm) / own_ohm, kv)
+    k = machine.correction.value
+    x1, findings = _positive_ohm(part, own_ohm, _REACTANCE_AT[machine.moment or setting.case.moment])
     x2 = _negative_ohm(part, own_ohm)
     r = _resistance_ohm(part, own_ohm, setting.frequency_hz)
     earthing = earthing_ohm(part, "neutral", own_kv) if word(part, "connection") == "star" else None
     y0 = OPEN
     if earthing is not None:
-        z0 = complex(r, _ohm(needed(part, "zero_sequence_reactance"), own_ohm)) + 3 * earthing
+        z0 = k * complex(r, _ohm(needed(part, "zero_sequence_reactance"), own_ohm)) + 3 * earthing
         y0 = admittance(part, z0 / base_ohm)
-    y = (admittance(part, complex(r, x1) / base_ohm), admittance(part, complex(r, x2) / base_ohm), y0)
+    y = (admittance(part, k * complex(r, x1) / base_ohm), admittance(part, k * complex(r, x2) / base_ohm), y0)
     shunt = ShuntStamp("line", y, source=True)
-    return Stamps(shunts=(shunt,), star_points=_star_point(earthing), findings=findings)
+    return Stamps((), (shunt,), (), _star_point(earthing), findings=findings, corrections=(machine.correction,))
+
+
+def subtransient_ohm(part: Synchronous, own_ohm: float) -> float:
+    """X″d in ohm; own_ohm: U²/S of the machine. Raises PartLeftOutError when it is missing."""
+    return _ohm(needed(part, "subtransient_reactance"), own_ohm)
 
 
 def _positive_ohm(part: Synchronous, own_ohm: float, name: str) -> tuple[float, tuple[Finding, ...]]:
@@ -71,7 +81,7 @@ def _positive_ohm(part: Synchronous, own_ohm: float, name: str) -> tuple[float, 
     remark = Finding(
         Severity.WARNING, "reactance-assumed", message, f"Enter {label} of {part.title}.", (part.id,), name
     )
-    return _ohm(needed(part, "subtransient_reactance"), own_ohm), (remark,)
+    return subtransient_ohm(part, own_ohm), (remark,)
 
 
 def _ohm(reactance: Quantity, own_ohm: float) -> float:
@@ -91,7 +101,7 @@ def _resistance_ohm(part: Synchronous, own_ohm: float, frequency_hz: float) -> f
     time_constant = part.given("armature_time_constant")
     if isinstance(time_constant, Quantity) and part.given("x_over_r") is None:
         return _negative_ohm(part, own_ohm) / (2 * math.pi * frequency_hz * time_constant.to("s"))
-    return _ohm(needed(part, "subtransient_reactance"), own_ohm) / in_unit(part, "x_over_r", "")
+    return subtransient_ohm(part, own_ohm) / in_unit(part, "x_over_r", "")
 
 
 def induction_mva(part: InductionMotor) -> float:
@@ -130,23 +140,23 @@ def induction_stamps(part: InductionMotor, kv: float, setting: Setting) -> Stamp
 
     In the steady state an induction motor feeds no fault: its field has died away (IEC 60909-0, clause 11).
     """
-    running = running_count(part)
-    if running == 0 or setting.case.moment == "steady":
+    running, machine = running_count(part), setting.method.induction(part)
+    if running == 0 or (machine.moment or setting.case.moment) == "steady":
         return Stamps()
     own_kv = in_unit(part, "rated_voltage", "kV")
     own_ohm = own_kv**2 / induction_mva(part)
-    z1 = with_x_over_r(
-        own_ohm / in_unit(part, "locked_rotor_ratio", ""), induction_x_over_r(part, setting.frequency_hz)
-    )
+    locked_rotor_ratio = machine.locked_rotor_ratio or in_unit(part, "locked_rotor_ratio", "")
+    x_over_r = machine.x_over_r or induction_x_over_r(part, setting.frequency_hz)
+    z1 = machine.correction.value * with_x_over_r(own_ohm / locked_rotor_ratio, x_over_r)
     earthing = earthing_ohm(part, "neutral", own_kv) if word(part, "connection") == "star" else None
     base_ohm = setting.base_ohm(kv)
     y1, y0 = running * admittance(part, z1 / base_ohm), OPEN
     findings: tuple[Finding, ...] = ()
     if earthing is not None:
-        z0, findings = _zero_ohm(part, z1, own_ohm)
+        z0, findings = _zero_ohm(part, z1, own_ohm * machine.correction.value)
         y0 = running * admittance(part, (z0 + 3 * earthing) / base_ohm)
     shunt = ShuntStamp("line", (y1, y1, y0), source=True)
-    return Stamps(shunts=(shunt,), star_points=_star_point(earthing), findings=findings)
+    return Stamps((), (shunt,), (), _star_point(earthing), findings=findings, corrections=(machine.correction,))
 
 
 def _zero_ohm(part: InductionMotor, z1: complex, own_ohm: float) -> tuple[complex, tuple[Finding, ...]]:

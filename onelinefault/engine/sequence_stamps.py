@@ -9,6 +9,7 @@ import math
 from dataclasses import dataclass, field
 
 from onelinefault.engine.case import Case
+from onelinefault.engine.method import CLASSICAL, Correction, Method
 from onelinefault.errors import StudyError
 from onelinefault.model.findings import Finding, Severity
 from onelinefault.model.part import Part, describe
@@ -24,11 +25,12 @@ INNER = ""  # in place of a terminal's name: the star point inside a part with t
 
 @dataclass(frozen=True, slots=True)
 class Setting:
-    """What every stamp depends on besides its part: plant base in MVA, frequency in Hz, and the case."""
+    """What every stamp depends on besides its part: plant base in MVA, frequency in Hz, case, and what it decides."""
 
     base_mva: float
     frequency_hz: float
     case: Case
+    method: Method = CLASSICAL
 
     def base_ohm(self, line_kv: float) -> float:
         """Base impedance in ohm at a line-to-line voltage in kV: V² / S."""
@@ -67,6 +69,7 @@ class ConverterStamp:
     terminal: str
     limit_pu: float
     angle_deg: float
+    constant: bool = False
 
 
 @dataclass(frozen=True, slots=True)
@@ -80,7 +83,10 @@ class StarPoint:
 
 @dataclass(frozen=True, slots=True)
 class Stamps:
-    """All that one part puts into the network. inner_kv: voltage of its inner star point in kV, 0 without one."""
+    """All that one part puts into the network. inner_kv: voltage of its inner star point in kV, 0 without one.
+
+    corrections: the factors of the method in it.
+    """
 
     branches: tuple[BranchStamp, ...] = ()
     shunts: tuple[ShuntStamp, ...] = ()
@@ -88,6 +94,7 @@ class Stamps:
     star_points: tuple[StarPoint, ...] = ()
     inner_kv: float = 0.0
     findings: tuple[Finding, ...] = field(default=())
+    corrections: tuple[Correction, ...] = ()
 
 
 class PartLeftOutError(StudyError):

@@ -7,6 +7,7 @@ at the terminal, so again the leakage ohms do not move with the tap. A leg may b
 
 from dataclasses import dataclass
 
+from onelinefault.engine.method import Correction
 from onelinefault.engine.sequence_stamps import (
     INNER,
     OPEN,
@@ -21,8 +22,9 @@ from onelinefault.engine.sequence_stamps import (
     optional,
     with_x_over_r,
 )
-from onelinefault.engine.sequence_transformers import DEGREES_PER_HOUR, Winding, clock_sign
+from onelinefault.engine.sequence_transformers import DEGREES_PER_HOUR, Winding, clock_sign, with_load_loss
 from onelinefault.model.part import Part
+from onelinefault.model.quantity import Quantity
 from onelinefault.model.transforming import Autotransformer, Transformer3
 
 _HIGH, _MIDDLE, _LOW = 0, 1, 2
@@ -33,6 +35,8 @@ THIN = 1e-7  # of the largest leg: as good as nothing, and the equations can sti
 COMMON = "common"  # the star point that both sides of an autotransformer share
 
 Legs = tuple[complex, complex, complex]
+Sides = tuple[str, str, str]
+Kilovolts = tuple[float, float, float]
 
 
 @dataclass(frozen=True, slots=True)
@@ -65,14 +69,15 @@ def transformer3_stamps(part: Transformer3, node_kv: tuple[float, float, float],
     node_kv: nominal voltages of its nodes, high, medium, low. The tap is on the high side.
     """
     group = group_of(part, 3)
-    tap = 1 + in_unit(part, "tap", "pu")
+    tap = 1 + (in_unit(part, "tap", "pu") if setting.method.taps else 0.0)
     windings = []
     for k, side in enumerate(SIDES):
         rated_kv = in_unit(part, f"{side}_voltage", "kV")
         earthing = earthing_ohm(part, f"neutral_{side}", rated_kv, group.brought_out[k])
         turns_kv = rated_kv * (tap if k == _HIGH else 1.0)
         windings.append(Winding(side, group.connections[k], turns_kv, node_kv[k], earthing))
-    legs = _without_shorts(part, star_legs(_pairs3(part, setting.base_mva)))
+    pairs, corrections = _pairs3(part, node_kv, setting)
+    legs = _without_shorts(part, star_legs(pairs))
     share = in_unit(part, "zero_sequence_impedance", "pu")
     clocks = (0, *group.clocks)
     zero = [
@@ -83,7 +88,8 @@ def transformer3_stamps(part: Transformer3, node_kv: tuple[float, float, float],
         _leg(part, w, z, zero_leg, n) for w, z, zero_leg, n in zip(windings, legs, zero, clocks, strict=True)
     )
     stars = tuple(StarPoint(w.side, "from", k) for k, w in enumerate(windings) if w.earthed)
-    return Stamps(branches=branches, star_points=stars, inner_kv=in_unit(part, "high_voltage", "kV"))
+    inner_kv = in_unit(part, "high_voltage", "kV")
+    return Stamps(branches, star_points=stars, inner_kv=inner_kv, corrections=corrections)
 
 
 def _star_clocks(windings: list[Winding], clocks: tuple[int, ...]) -> tuple[int, ...]:
@@ -91,21 +97,42 @@ def _star_clocks(windings: list[Winding], clocks: tuple[int, ...]) -> tuple[int,
     return tuple(n if w.connection == "Y" else 0 for w, n in zip(windings, clocks, strict=True))
 
 
-def _pairs3(part: Transformer3, base_mva: float) -> Legs:
-    """Pair impedances in per unit of the plant's base power at rated voltages."""
+def _pairs3(part: Transformer3, node_kv: Kilovolts, setting: Setting) -> tuple[Legs, tuple[Correction, ...]]:
+    """Pair impedances in per unit of the plant's base power at rated voltages, with the method's factors."""
     high = in_unit(part, "rated_power_high", "MVA")
     power = (
         high,
         optional(part, "rated_power_medium", "MVA") or high,
         optional(part, "rated_power_low", "MVA") or high,
     )
-    x_over_r = in_unit(part, "x_over_r", "")
-    found = []
-    for one, other in _PAIRS:
-        pair = f"{SIDES[one]}_{SIDES[other]}"
-        own_mva = optional(part, f"base_{pair}", "MVA") or min(power[one], power[other])
-        found.append(with_x_over_r(in_unit(part, f"impedance_{pair}", "pu") * base_mva / own_mva, x_over_r))
-    return found[0], found[1], found[2]
+    own_mva = tuple(
+        optional(part, f"base_{SIDES[one]}_{SIDES[other]}", "MVA") or min(power[one], power[other])
+        for one, other in _PAIRS
+    )
+    return _pairs(part, SIDES, own_mva, node_kv, setting)
+
+
+def _pairs(
+    part: Transformer3 | Autotransformer, sides: Sides, own_mva: tuple[float, ...], node_kv: Kilovolts, setting: Setting
+) -> tuple[Legs, tuple[Correction, ...]]:
+    """Pair impedances and factors; own_mva: base of each pair's rating, node_kv: of the sides' nodes."""
+    found, corrections = [], []
+    for (one, other), mva in zip(_PAIRS, own_mva, strict=True):
+        z = _pair(part, f"{sides[one]}_{sides[other]}", mva, setting.base_mva)
+        x_pu = z.imag * mva / setting.base_mva
+        kv = min(node_kv[one], node_kv[other])
+        corrections.append(setting.method.pair(part, (sides[one], sides[other]), x_pu, kv))
+        found.append(corrections[-1].value * z)
+    return (found[0], found[1], found[2]), tuple(corrections)
+
+
+def _pair(part: Transformer3 | Autotransformer, pair: str, own_mva: float, base_mva: float) -> complex:
+    """Impedance of a pair in per unit of the plant's base power; R from its own load loss, else from X/R."""
+    size = in_unit(part, f"impedance_{pair}", "pu")
+    loss = part.given(f"load_loss_{pair}") if isinstance(part, Transformer3) else None
+    if isinstance(loss, Quantity):
+        return with_load_loss(part, f"load_loss_{pair}", size, loss, own_mva) * base_mva / own_mva
+    return with_x_over_r(size * base_mva / own_mva, in_unit(part, "x_over_r", ""))
 
 
 def _leg(part: Transformer3 | Autotransformer, winding: Winding, z: complex, zero: _ZeroLeg, clock: int) -> BranchStamp:
@@ -168,14 +195,15 @@ def autotransformer_stamps(part: Autotransformer, node_kv: tuple[float, float, f
     Without a delta the tertiary leg is open; the same legs hold, as i_H = −I_X then takes only V_H/a − V_X.
     """
     group = group_of(part, 3)
-    tap = 1 + in_unit(part, "tap", "pu")
+    tap = 1 + (in_unit(part, "tap", "pu") if setting.method.taps else 0.0)
     rated = [in_unit(part, f"{side}_voltage", "kV") for side in AUTO_SIDES]
     earthing = earthing_ohm(part, "neutral", rated[_MIDDLE])
     windings = [
         Winding(side, "Y" if k < _LOW else group.connections[_LOW], u * (1.0, tap)[k == _HIGH], v, None)
         for k, (side, u, v) in enumerate(zip(AUTO_SIDES, rated, node_kv, strict=True))
     ]
-    legs = _without_shorts(part, star_legs(_pairs_auto(part, setting.base_mva)))
+    pairs, corrections = _pairs_auto(part, node_kv, setting)
+    legs = _without_shorts(part, star_legs(pairs))
     share = in_unit(part, "zero_sequence_impedance", "pu")
     z0 = (legs[0] * share, legs[1] * share, legs[2] * share)
     if earthing is None:
@@ -187,19 +215,16 @@ def autotransformer_stamps(part: Autotransformer, node_kv: tuple[float, float, f
         for w, z, zero_leg, n in zip(windings, legs, zero, (0, *group.clocks), strict=True)
     )
     stars = () if earthing is None else (StarPoint(COMMON, "from", _HIGH), StarPoint(COMMON, "from", _MIDDLE))
-    return Stamps(branches=branches, star_points=stars, inner_kv=rated[_HIGH])
+    return Stamps(branches, star_points=stars, inner_kv=rated[_HIGH], corrections=corrections)
 
 
-def _pairs_auto(part: Autotransformer, base_mva: float) -> Legs:
-    """Pair impedances in per unit of the plant's base power at rated voltages."""
+def _pairs_auto(part: Autotransformer, node_kv: Kilovolts, setting: Setting) -> tuple[Legs, tuple[Correction, ...]]:
+    """Pair impedances in per unit of the plant's base power at rated voltages, with the method's factors."""
     rated_mva = in_unit(part, "rated_power", "MVA")
-    x_over_r = in_unit(part, "x_over_r", "")
-    found = []
-    for one, other in _PAIRS:
-        pair = f"{AUTO_SIDES[one]}_{AUTO_SIDES[other]}"
-        own_mva = optional(part, f"base_{pair}", "MVA") or rated_mva
-        found.append(with_x_over_r(in_unit(part, f"impedance_{pair}", "pu") * base_mva / own_mva, x_over_r))
-    return found[0], found[1], found[2]
+    own_mva = tuple(
+        optional(part, f"base_{AUTO_SIDES[one]}_{AUTO_SIDES[other]}", "MVA") or rated_mva for one, other in _PAIRS
+    )
+    return _pairs(part, AUTO_SIDES, own_mva, node_kv, setting)
 
 
 def _auto_earthed(part: Autotransformer, windings: list[Winding], z0: Legs, earth: complex) -> list[_ZeroLeg]:

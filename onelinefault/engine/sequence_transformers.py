@@ -30,6 +30,7 @@ from onelinefault.engine.sequence_stamps import (
     zero_sequence_assumed,
 )
 from onelinefault.model.findings import Finding
+from onelinefault.model.part import Part
 from onelinefault.model.quantity import Quantity
 from onelinefault.model.transforming import EarthingTransformer, Transformer
 
@@ -80,10 +81,12 @@ def transformer_stamps(part: Transformer, high_kv: float, low_kv: float, setting
     high_kv, low_kv: nominal voltages of its nodes.
     """
     group = group_of(part, 2)
-    start, end = _windings(part, high_kv, low_kv)
+    start, end = _windings(part, high_kv, low_kv, setting.method.taps)
     base_ohm = setting.base_ohm(end.node_kv)
     own_base = end.turns_kv**2 / in_unit(part, "rated_power", "MVA") / base_ohm
-    z1 = _leakage_pu(part) * own_base
+    leakage_pu = leakage(part)
+    correction = setting.method.transformer(part, leakage_pu.imag, high_kv, low_kv)
+    z1 = correction.value * leakage_pu * own_base
     y1 = admittance(part, z1)
     t = (start.turns_kv / start.node_kv) / (end.turns_kv / end.node_kv)
     zero = _zero_sequence(part, start, end, z1, own_base, t, setting)
@@ -99,12 +102,13 @@ def transformer_stamps(part: Transformer, high_kv: float, low_kv: float, setting
         lead_deg=-lag if start.side == "high" else lag,
     )
     stars = [StarPoint(w.side, e) for w, e in ((start, "from"), (end, "to")) if w.earthed]
-    return Stamps(branches=(branch,), star_points=tuple(stars), findings=zero.findings)
+    return Stamps((branch,), star_points=tuple(stars), findings=zero.findings, corrections=(correction,))
 
 
-def _windings(part: Transformer, high_kv: float, low_kv: float) -> tuple[Winding, Winding]:
-    """The tapped winding and the other one."""
-    group, tapped, turns = group_of(part, 2), word(part, "tap_side"), 1 + in_unit(part, "tap", "pu")
+def _windings(part: Transformer, high_kv: float, low_kv: float, taps: bool) -> tuple[Winding, Winding]:
+    """The tapped winding and the other one; taps: whether the tap counts."""
+    group, tapped = group_of(part, 2), word(part, "tap_side")
+    turns = 1 + (in_unit(part, "tap", "pu") if taps else 0.0)
     sides = []
     for k, (side, node_kv) in enumerate((("high", high_kv), ("low", low_kv))):
         rated_kv = in_unit(part, f"{side}_voltage", "kV")
@@ -114,20 +118,31 @@ def _windings(part: Transformer, high_kv: float, low_kv: float) -> tuple[Winding
     return (sides[1], sides[0]) if tapped == "low" else (sides[0], sides[1])
 
 
-def _leakage_pu(part: Transformer) -> complex:
-    """Short-circuit impedance on the transformer's own rating; R from X/R, else from the load loss."""
+def leakage(part: Transformer) -> complex:
+    """Short-circuit impedance in per unit of the transformer's own rating; R from X/R, else from the load loss.
+
+    Raises PartLeftOutError when a rating is missing or the load loss is above the impedance.
+    """
     size = in_unit(part, "impedance", "pu")
     loss = part.given("load_loss")
     if part.given("x_over_r") is not None or not isinstance(loss, Quantity):
         return with_x_over_r(size, in_unit(part, "x_over_r", ""))
-    r = loss.to("pu") if loss.dimension == "ratio" else loss.to("MW") / in_unit(part, "rated_power", "MVA")
+    return with_load_loss(part, "load_loss", size, loss, in_unit(part, "rated_power", "MVA"))
+
+
+def with_load_loss(part: Part, name: str, size: float, loss: Quantity, mva: float) -> complex:
+    """Impedance of a magnitude per unit of a rated power in MVA, with R from the load loss in the field of a name.
+
+    Raises PartLeftOutError when the load loss is above the impedance.
+    """
+    r = loss.to("pu") if loss.dimension == "ratio" else loss.to("MW") / mva
     if r > size:
         raise left_out(
             part,
             "load-loss",
             f"its load loss of {loss.text} alone would be more than its impedance of {size * 100:.4g} %",
             "Correct the load loss or the impedance, or enter X/R instead.",
-            "load_loss",
+            name,
         )
     return complex(r, math.sqrt(size**2 - r**2))
 

@@ -205,7 +205,7 @@ class Reactor(Part):
     )
     rated_current: Quantity | None = rating("Rated current", CURRENT, help="Needed when the reactance is in %.")
     rated_voltage: Quantity | None = rating("Rated voltage", VOLTAGE, help="The node's nominal voltage when not given.")
-    x_over_r: Quantity | None = rating("X/R", NUMBER, default="80", at_most=10000)
+    x_over_r: Quantity | None = rating("X/R", NUMBER, default="80", at_most=1000000)
     zero_sequence_reactance: Quantity | None = rating(
         "X0", REACTANCE, group="Earthing", help="Taken as the reactance when not given."
     )

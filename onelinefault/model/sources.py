@@ -22,6 +22,8 @@ from onelinefault.model.quantity import (
 )
 from onelinefault.model.values import Neutral
 
+MOTOR_DRIVES = ("direct", "regenerating converter", "converter")
+
 
 @dataclass(frozen=True, kw_only=True)
 class Supply(Part):
@@ -153,6 +155,16 @@ class SynchronousGenerator(Part):
         alternatives=("resistance", "x_over_r"),
         help="Armature (d.c.) time constant: R = X2/(2πf·Ta).",
     )
+    voltage_range: Quantity | None = rating(
+        "Voltage above rated, pG",
+        PERCENT,
+        above_zero=False,
+        at_least=0,
+        at_most=30,
+        default="0 %",
+        group="IEC 60909",
+        help="By how much its terminal voltage is permanently above the rated one (IEC 60909-0, 6.6.1 and 6.7.2).",
+    )
     connection: str | None = choice("Winding", ("star", "delta"), default="star")
     neutral: Neutral | None = neutral("Star point", help="isolated, solid, resistor 10 A, reactor 5 ohm")
 
@@ -233,6 +245,13 @@ class InductionMotor(Part):
         at_least=0,
         at_most=100,
         help="Share of the group that runs when the fault happens.",
+    )
+    drive: str | None = choice(
+        "Fed",
+        MOTOR_DRIVES,
+        default="direct",
+        help="A motor behind a converter feeds a fault only where the converter can feed back; it then counts as one "
+        "with 3 times rated current and X/R 10, in three-phase faults only (IEC 60909-0, 6.11).",
     )
     connection: str | None = choice("Winding", ("star", "delta"), default="delta")
     neutral: Neutral | None = neutral("Star point", help="Nearly always isolated.")

@@ -3,7 +3,7 @@
 from dataclasses import dataclass
 from typing import ClassVar
 
-from onelinefault.model.fields import choice, neutral, rating, vector_group
+from onelinefault.model.fields import choice, flag, neutral, rating, vector_group, words
 from onelinefault.model.part import Part, Terminal
 from onelinefault.model.quantity import (
     APPARENT_POWER,
@@ -92,6 +92,27 @@ class Transformer(Part):
         group="Earthing",
         help="Zero-sequence magnetising impedance on rated power, of a three-limb core. Left out when not given.",
     )
+    unit_generator: str | None = words(
+        "Unit with generator",
+        group="IEC 60909",
+        help="Name of the generator that makes a power station unit with this transformer (IEC 60909-0, 6.7).",
+    )
+    on_load_tap_changer: bool | None = flag(
+        "On-load tap changer",
+        default=True,
+        group="IEC 60909",
+        help="Matters for a power station unit only: factor K_S with one, K_SO without.",
+    )
+    tap_range: Quantity | None = rating(
+        "Off-load tap, pT",
+        PERCENT,
+        above_zero=False,
+        at_least=-30,
+        at_most=30,
+        default="0 %",
+        group="IEC 60909",
+        help="Of a unit without on-load tap changer, where an off-load tap is used permanently: +5 % or -5 %.",
+    )
 
 
 @dataclass(frozen=True, kw_only=True)
@@ -125,7 +146,14 @@ class Transformer3(Part):
     )
     base_high_low: Quantity | None = rating("… on base, high-low", APPARENT_POWER)
     base_medium_low: Quantity | None = rating("… on base, medium-low", APPARENT_POWER)
-    x_over_r: Quantity | None = rating("X/R", NUMBER, default="20", at_most=500, help="Of each pair.")
+    x_over_r: Quantity | None = rating(
+        "X/R", NUMBER, default="20", at_most=500, help="Of each pair whose load loss is not given."
+    )
+    load_loss_high_medium: Quantity | None = rating(
+        "Load loss, high-medium", LOSS, help="At the pair's base power, in kW, or as a percentage of it."
+    )
+    load_loss_high_low: Quantity | None = rating("Load loss, high-low", LOSS)
+    load_loss_medium_low: Quantity | None = rating("Load loss, medium-low", LOSS)
     vector_group: VectorGroup | None = vector_group("Vector group", default="YNyn0d11")
     tap: Quantity | None = rating("Tap, high side", PERCENT, above_zero=False, at_least=-30, at_most=30, default="0 %")
     neutral_high: Neutral | None = neutral("Neutral, high side", default="solid")

@@ -21,7 +21,7 @@ from onelinefault.model.findings import Finding, Severity
 from onelinefault.model.plant import Plant
 
 FORMATS: Final = ("table", "json", "csv")
-_METHODS: Final = {"classical": "classical method"}
+_METHODS: Final = {"classical": "classical method", "iec60909": "IEC 60909-0"}
 _LEVELS: Final = {"max": "largest supply", "min": "smallest supply"}
 _OPEN: Final = "–"
 _Column = tuple[str, Callable[[BusRow], str]]
@@ -169,9 +169,14 @@ def bus_json(table: BusTable) -> str:
             "prefault_pu": table.plant.document.prefault_pu,
             "arrangement": table.arrangement,
             "findings": [_finding_record(table.plant, finding) for finding in table.findings],
-            "rows": [asdict(row) for row in table.rows],
+            "rows": [_row_record(row) for row in table.rows],
         }
     )
+
+
+def _row_record(row: BusRow) -> dict[str, Any]:
+    """A row; the method's own figures only where it has some."""
+    return {key: value for key, value in asdict(row).items() if key != "figures" or value is not None}
 
 
 def _json(value: object) -> str:

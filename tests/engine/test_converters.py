@@ -1,3 +1,5 @@
+from dataclasses import replace
+
 import numpy as np
 import pytest
 from hypothesis import given, settings
@@ -122,3 +124,18 @@ def test_a_converter_that_finds_no_rest_is_named() -> None:
     result = study.fault(Fault(Place("B0")))
     finding = next(f for f in result.findings if f.code == "converter-unsettled")
     assert finding.parts == ("C0",) and "converter source C0" in finding.message
+
+
+@pytest.mark.parametrize("node", ["B0", "B1"])
+@pytest.mark.parametrize("kind", list(FaultKind))
+def test_constant_converters_feed_their_limit_in_phase_with_the_fault_current(node: str, kind: FaultKind) -> None:
+    """IEC 60909-0, 6.9: I = (E + Σ|Zij|·J)/|Zi|, magnitudes, here with impedances of different angles."""
+    s, alone = (plant(path=0.1 + 0.2j) for _ in range(2))
+    s.converters = [replace(c, constant=True) for c in s.converters]
+    alone.converters = []
+    more, less = (sketch.study().fault(Fault(Place(node), kind)) for sketch in (s, alone))
+    assert abs(more.terminal_ka["C0", "line"]).max() / BASE_KA == pytest.approx(0.5, rel=1e-12)
+    # the transfer impedance is that of the supply for both places, as there is but one path
+    ratio = (0.1 if node == "B0" else abs(0.1 + 0.3j)) * 0.5
+    assert abs(more.sequence_ka[0]) / abs(less.sequence_ka[0]) == pytest.approx(1 + ratio, rel=1e-12)
+    assert np.angle(more.sequence_ka[0]) == pytest.approx(np.angle(less.sequence_ka[0]), abs=1e-12)

@@ -216,3 +216,31 @@ def test_group_of_two_windings_is_refused_by_name() -> None:
     part = made(Transformer3, {"vector_group": "YNd11"})
     with pytest.raises(PartLeftOutError, match=r"three-winding transformer T1.*YNd11 names 2 windings"):
         transformer3_stamps(part, (132, 33, 11), SETTING)  # type: ignore[arg-type]
+
+
+def test_each_pair_has_the_resistance_of_its_own_load_loss() -> None:
+    # 40 MVA: 120 kW high-medium; 0.4 % of 10 MVA high-low; medium-low by X/R
+    ratings = {
+        "high_voltage": "110 kV", "medium_voltage": "20 kV", "low_voltage": "10 kV", "rated_power_high": "40 MVA",
+        "impedance_high_medium": "12 %", "impedance_high_low": "5 %", "impedance_medium_low": "4 %",
+        "base_high_low": "10 MVA", "base_medium_low": "10 MVA", "load_loss_high_medium": "120 kW",
+        "load_loss_high_low": "0.4 %", "x_over_r": "25",
+    }  # fmt: skip
+    stamps = transformer3_stamps(made(Transformer3, ratings), (110.0, 20.0, 10.0), SETTING)
+    z_high, z_medium, z_low = (1 / branch.y[0] for branch in stamps.branches)
+    r, x = 0.003 * 100 / 40, math.sqrt(0.12**2 - 0.003**2) * 100 / 40
+    assert z_high + z_medium == pytest.approx(complex(r, x), rel=1e-12)
+    r, x = 0.004 * 100 / 10, math.sqrt(0.05**2 - 0.004**2) * 100 / 10
+    assert z_high + z_low == pytest.approx(complex(r, x), rel=1e-12)
+    assert z_medium + z_low == pytest.approx(0.4 * complex(1, 25) / math.hypot(1, 25), rel=1e-12)
+
+
+def test_a_pair_s_load_loss_above_its_impedance_is_refused() -> None:
+    ratings = {
+        "high_voltage": "110 kV", "medium_voltage": "20 kV", "low_voltage": "10 kV", "rated_power_high": "40 MVA",
+        "impedance_high_medium": "12 %", "impedance_high_low": "5 %", "impedance_medium_low": "4 %",
+        "load_loss_medium_low": "5 %",
+    }  # fmt: skip
+    with pytest.raises(PartLeftOutError, match="load loss") as caught:
+        transformer3_stamps(made(Transformer3, ratings), (110.0, 20.0, 10.0), SETTING)
+    assert caught.value.finding.field == "load_loss_medium_low"

@@ -51,7 +51,7 @@ class Deriver:
         if not self.grids.case.leave_out_small_motors:
             return views
         places = Places(nodes, _three_phase())
-        shares = {view: self._motor_share(self._sight(view, places)) for view in set(views)}
+        shares = {view: self.motor_share(self._sight(view, places)) for view in set(views)}
         small = [shares[view][k] <= NEGLIGIBLE_MOTOR_SHARE for k, view in enumerate(views)]
         return [
             method_of(self.grids.grid(view)).without_motors() if left_out else view
@@ -70,7 +70,7 @@ class Deriver:
     def _sight(self, view: View, places: Places) -> Sight:
         return Sight(self.grids.grid(view), places)
 
-    def _motor_share(self, sight: Sight) -> FloatArray:
+    def motor_share(self, sight: Sight) -> FloatArray:
         """What motors add to the three-phase current without them, over that, shape (k,)."""
         other = method_of(sight.grid).without_motors()
         if other == sight.grid.view:
@@ -80,7 +80,7 @@ class Deriver:
         share = np.divide(with_pu, without_pu, out=np.full(len(with_pu), np.inf), where=without_pu > 0)
         return np.where(with_pu > 0, share - 1, 0.0)
 
-    def _feeding_at(self, grid: Grid, places: Places) -> tuple[Feeding, IntArray]:
+    def feeding_at(self, grid: Grid, places: Places) -> tuple[Feeding, IntArray]:
         """What feeds the places, and their numbers in it: a point along a branch is a node of its own."""
         network = grid.network
         if places.branch >= 0:
@@ -119,7 +119,7 @@ class _Arrays:
         self.ik_ka: FloatArray = self.lines_ka.max(axis=1)
         self.decaying_ka = abs(self.sight.phases_ka(False)).max(axis=1)  # what comes through impedances
         self.lasting_ka = np.maximum(self.ik_ka - self.decaying_ka, 0.0)  # what converters add
-        feeding, own = deriver._feeding_at(self.sight.grid, places)
+        feeding, own = deriver.feeding_at(self.sight.grid, places)
         self.apart: BoolArray = feeding.apart[own]
         self.largest, self.nearby = feeding.largest[own], feeding.nearby[own]
 
@@ -178,7 +178,7 @@ class _Arrays:
         """One by one."""
         case, peaks, broken = self.case, self.peaks(), self.breaking()
         ratio_dc, idc = self.direct_current()
-        steady, share = self.steady(), self.deriver._motor_share(self.sight)
+        steady, share = self.steady(), self.deriver.motor_share(self.sight)
         hertz = self.sight.grid.network.frequency_hz
         m = decay.m(hertz, case.duration_s, peaks[case.peak_method][1])
         n = 1.0

@@ -136,6 +136,9 @@ def _parser() -> argparse.ArgumentParser:
 
 
 def _add_state(parser: argparse.ArgumentParser) -> None:
+    parser.add_argument(
+        "--method", choices=("classical", "iec60909"), default="classical", help="method of calculation (classical)"
+    )
     parser.add_argument("--level", choices=("max", "min"), default="max", help="largest or smallest supply (max)")
     parser.add_argument("--arrangement", metavar="NAME", help="a running arrangement; else as drawn")
 
@@ -240,7 +243,8 @@ def _outputs(file: str | Path, arguments: argparse.Namespace) -> "Outputs":
     from onelinefault.engine.case import Case  # noqa: PLC0415 - numpy and scipy come after the file has been found good
     from onelinefault.report.outputs import Outputs  # noqa: PLC0415
 
-    return Outputs(opened.plant, Case(level=arguments.level), arguments.arrangement, opened.findings)
+    case = Case(method=arguments.method, level=arguments.level)
+    return Outputs(opened.plant, case, arguments.arrangement, opened.findings)
 
 
 def _drawn(outputs: "Outputs", *what: Any) -> list[Path] | None:

@@ -19,10 +19,11 @@ from onelinefault.model.plant import Plant
 
 @dataclass(frozen=True)
 class Choices:
-    """What the top line holds: kind of fault, phases, level, arrangement, depth of detail (1 to 3)."""
+    """What the top line holds: method, kind of fault, phases, level, arrangement, depth of detail (1 to 3)."""
 
     kind: FaultKind = FaultKind.THREE_PHASE
     phases: str = ""
+    method: str = "classical"
     level: str = "max"
     arrangement: str | None = None
     detail: int = 2
@@ -30,7 +31,7 @@ class Choices:
     @property
     def case(self) -> Case:
         """The case for the engine."""
-        return Case(level=self.level)
+        return Case(method=self.method, level=self.level)
 
 
 class Session(QObject):

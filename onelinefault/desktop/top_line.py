@@ -81,7 +81,7 @@ class TopLine(QWidget):
         super().__init__()
         self._session = session
         self.name, self.edited = ElidedLabel(), _muted(self.tr("· edited"))
-        self.method = Segments(self.tr("Method"), [("classical", self.tr("classical"), _METHOD_TIP)])
+        self.method = Segments(self.tr("Method"), self._methods())
         self.kind = Segments(self.tr("Kind of fault"), self._kinds())
         self.phases = Segments(self.tr("Phases"), [])
         self.level = Segments(self.tr("Level"), self._levels())
@@ -96,6 +96,12 @@ class TopLine(QWidget):
         self._connect()
         self.show_file()
         self.show_choices()
+
+    def _methods(self) -> list[tuple[str, str, str]]:
+        return [
+            ("classical", self.tr("classical"), self.tr("Complex impedances in three sequences, no factors")),
+            ("iec60909", self.tr("IEC 60909"), self.tr("IEC 60909-0:2016: voltage factor c, impedance factors K")),
+        ]
 
     def _kinds(self) -> list[tuple[str, str, str]]:
         return [
@@ -117,7 +123,6 @@ class TopLine(QWidget):
         self.arrangement.setSizeAdjustPolicy(QComboBox.SizeAdjustPolicy.AdjustToMinimumContentsLengthWithIcon)
         self.arrangement.setFocusPolicy(Qt.FocusPolicy.StrongFocus)
         self.name.setProperty("part", "heading")
-        self.method.show_choice("classical")
         self.setSizePolicy(QSizePolicy.Policy.Expanding, QSizePolicy.Policy.Fixed)
         self.setAccessibleName(self.tr("Top line"))
 
@@ -147,6 +152,7 @@ class TopLine(QWidget):
         session.plant_changed.connect(self.show_file)
         session.file_changed.connect(self.show_file)
         session.choices_changed.connect(self.show_choices)
+        self.method.chosen.connect(self._choose_method)
         self.kind.chosen.connect(self._choose_kind)
         self.phases.chosen.connect(self._choose_phases)
         self.level.chosen.connect(self._choose_level)
@@ -173,6 +179,7 @@ class TopLine(QWidget):
         """Kind, phases, level, arrangement and detail as the session has them."""
         choices = self._session.choices
         self.kind.show_choice(choices.kind)
+        self.method.show_choice(choices.method)
         self.level.show_choice(choices.level)
         self.detail.show_level(choices.detail)
         offered = PHASE_CHOICES[choices.kind]
@@ -196,6 +203,9 @@ class TopLine(QWidget):
 
     def _choose_phases(self, key: str) -> None:
         self._session.choose(phases=key)
+
+    def _choose_method(self, method: str) -> None:
+        self._session.choose(method=method)
 
     def _choose_level(self, key: str) -> None:
         self._session.choose(level=key)
@@ -250,9 +260,6 @@ class TopLine(QWidget):
             button.style().unpolish(button)
             button.style().polish(button)
         self._row.invalidate()
-
-
-_METHOD_TIP: Final = "The classical calculation with complex impedances in three sequences"
 
 
 def _muted(words: str) -> QLabel:

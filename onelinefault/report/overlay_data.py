@@ -16,7 +16,7 @@ KIND_WORDS: Final[dict[FaultKind, str]] = {
     FaultKind.TWO_LINES_TO_EARTH: "two lines to earth",
     FaultKind.LINE_TO_EARTH: "line-to-earth fault",
 }
-METHOD_WORDS: Final = {"classical": "classical method"}
+METHOD_WORDS: Final = {"classical": "classical method", "iec60909": "IEC 60909-0"}
 LEVEL_WORDS: Final = {"max": "largest", "min": "smallest"}
 _NOISE: Final = 1e-4  # phases and sequences below this share of the largest are rounding, or nobody's concern
 _LEAST_SHARE: Final = 0.005  # flows below this share of the largest are not drawn

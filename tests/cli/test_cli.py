@@ -329,3 +329,23 @@ def test_a_reader_that_stops_early(file: str) -> None:
         process.stdout.close()
         assert process.stderr.read() == b""
     assert process.returncode == DONE
+
+
+def test_the_method_is_chosen_named_and_never_mixed(capsys: pytest.CaptureFixture[str]) -> None:
+    """IEC 60909-0 puts c = 1.1 on the source above 1 kV (table 1): more than the classical current at the intake."""
+    file = str(ROOT / "demo_projects" / "lindermoor_mill" / "lindermoor_mill.plant.json")
+    seen = {}
+    for method in ("classical", "iec60909"):
+        assert (
+            main(["faults", file, "--at", "Intake B", "--kind", "three-phase", "--method", method, "--format", "json"])
+            == 0
+        )
+        table = json.loads(capsys.readouterr().out)
+        assert table["method"] == method
+        seen[method] = table["rows"][0]
+    assert "figures" not in seen["classical"]
+    figures = seen["iec60909"]["figures"]
+    assert figures["c"] == 1.1
+    assert seen["iec60909"]["peak_ka"] == pytest.approx(figures["peaks"][figures["peak_method"]]["ip_ka"])
+    # a supply by itself gives its own fault level whatever c is (IEC 60909-0, 6.2: Z_Q = c U / (√3 I″kQ))
+    assert seen["iec60909"]["ik_ka"] >= seen["classical"]["ik_ka"]

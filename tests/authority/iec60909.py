@@ -5,57 +5,24 @@ plant gets X/R, where it gives x_T and losses the plant gets impedance and load 
 the transformer gets Z0 in per cent of Z1 and X0/R0.
 """
 
-import json
 import math
 from collections.abc import Iterator, Mapping
 from dataclasses import dataclass
 from functools import lru_cache
-from pathlib import Path
 from typing import Any
 
 from onelinefault.model.plant import Plant
+from tests.authority.published import Line, cases_of, lines_of
 from tests.oracle.sketch import Sketch, TerminalKey
 
-CASES: list[dict[str, Any]] = json.loads(Path(__file__).with_name("iec60909_cases.json").read_text("utf-8"))["cases"]
+CASES = cases_of("iec60909_cases.json")
+_KEYS = ("quantity", "bus", "element", "pair", "part", "tmin_s", "Tk_s", "args")
 NO_LOSS = "1000000"  # largest X/R of a reactor; the source gives it no resistance
-
-
-@dataclass(frozen=True)
-class Line:
-    """One expected value of a case."""
-
-    case: Mapping[str, Any]
-    wanted: Mapping[str, Any]
-    number: int
-
-    @property
-    def label(self) -> str:
-        """A readable id."""
-        keys = ("quantity", "bus", "element", "pair", "part", "tmin_s", "Tk_s", "args")
-        return "-".join(
-            [self.case["id"], f"{self.number:03d}", *(str(self.wanted[k]) for k in keys if k in self.wanted)]
-        )
-
-    @property
-    def tolerance(self) -> float:
-        """Largest absolute difference allowed."""
-        return max(float(self.wanted.get("abs_tol", 0.0)), self.wanted["rel_tol"] * abs(self.wanted["value"]))
-
-    def judge(self, found: float) -> str:
-        """Empty when the value agrees, else the sentence for the failure."""
-        wanted = float(self.wanted["value"])
-        if abs(found - wanted) <= self.tolerance:
-            return ""
-        source = f"{self.case['source']['document']} ({self.wanted['origin']})"
-        return f"found {found:.8g} {self.wanted['unit']}, {source} says {wanted:.8g}, tolerance {self.tolerance:.2g}"
 
 
 def lines(solver: str) -> Iterator[Line]:
     """All expected values of the cases of one solver."""
-    for case in CASES:
-        if case["solver"] == solver:
-            for number, wanted in enumerate(case["expected"], start=1):
-                yield Line(case, wanted, number)
+    return lines_of(CASES, solver, _KEYS)
 
 
 @dataclass(frozen=True)

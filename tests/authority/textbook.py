@@ -5,19 +5,19 @@ unit on its rating is typed in per cent, its neutral reactance as a reactor in o
 cent with hardly any loss; a line's reactance in ohm/km over one km.
 """
 
-import json
 import math
 from collections.abc import Iterator, Mapping
 from dataclasses import dataclass
 from functools import lru_cache
-from pathlib import Path
 from typing import Any
 
 from onelinefault.model.fault import Fault, FaultKind, Place
 from onelinefault.model.plant import Plant
+from tests.authority.published import Line, cases_of, lines_of
 from tests.oracle.sketch import Sketch, TerminalKey
 
-CASES: list[dict[str, Any]] = json.loads(Path(__file__).with_name("textbook_cases.json").read_text("utf-8"))["cases"]
+CASES = cases_of("textbook_cases.json")
+_KEYS = ("bus", "fault", "quantity", "at", "machine", "behind", "phase", "shift_deg", "cycles", "i", "j", "part")
 KINDS = {
     "3ph": FaultKind.THREE_PHASE,
     "slg": FaultKind.LINE_TO_EARTH,
@@ -30,41 +30,9 @@ NO_LOSS = "0.000001 %"  # the books neglect resistance; a load loss must be abov
 CLOCKS = {"TB-GLOVER-138": 1, "TB-DYN11-DIST": 11, "TB-SAADAT-3BUS": 11, "TB-STEVENSON-MOTORS": 11}
 
 
-@dataclass(frozen=True)
-class Line:
-    """One expected value of a case."""
-
-    case: Mapping[str, Any]
-    wanted: Mapping[str, Any]
-    number: int
-
-    @property
-    def label(self) -> str:
-        """A readable id: case, fault, quantity, phase."""
-        keys = ("bus", "fault", "quantity", "at", "machine", "behind", "phase", "shift_deg", "cycles", "i", "j", "part")
-        words = [str(self.wanted[key]) for key in keys if key in self.wanted]
-        return "-".join([self.case["id"], f"{self.number:02d}", *words])
-
-    @property
-    def tolerance(self) -> float:
-        """Largest absolute difference allowed."""
-        return float(self.wanted.get("abs_tol", 0.0) or self.wanted["rel_tol"] * abs(self.wanted["value"]))
-
-    def judge(self, found: float) -> str:
-        """Empty when the value agrees, else the sentence for the failure."""
-        wanted = float(self.wanted["value"])
-        if abs(found - wanted) <= self.tolerance:
-            return ""
-        source = f"{self.case['source']['document']} ({self.wanted['origin']})"
-        return f"found {found:.7g} {self.wanted['unit']}, {source} says {wanted:.7g}, tolerance {self.tolerance:.2g}"
-
-
 def lines(solver: str) -> Iterator[Line]:
     """All expected values of the cases of one solver."""
-    for case in CASES:
-        if case["solver"] == solver:
-            for number, wanted in enumerate(case["expected"], start=1):
-                yield Line(case, wanted, number)
+    return lines_of(CASES, solver, _KEYS)
 
 
 @dataclass(frozen=True)

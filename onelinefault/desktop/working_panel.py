@@ -37,7 +37,7 @@ def fault_lines(plant: Plant, result: FaultResult) -> list[Line]:
         Line("Currents at the fault"),
         *(Line(f"I″ {name}", _phasor(ka)) for name, ka in zip("abc", result.phases_ka, strict=True)),
         Line("3I0", _phasor(result.residual_ka)),
-        Line("I1, I2, I0", ", ".join(current_text(abs(complex(ka))) for ka in result.sequence_ka)),
+        *(Line(name, _phasor(ka)) for name, ka in zip(("I1", "I2", "I0"), result.sequence_ka, strict=True)),
         Line("Peak", current_text(result.peak_ka)),
         Line("X/R", figure(result.x_over_r)),
         Line("Fault level", f"{figure(result.fault_level_mva)} MVA"),
